@@ -1,0 +1,14 @@
+import { fileURLToPath } from "node:url";
+import { defineConfig } from "vitest/config";
+
+export default defineConfig({
+  resolve: { alias: { "@": fileURLToPath(new URL(".", import.meta.url)).replace(/\/$/, "") } },
+  test: {
+    include: ["tests/**/*.test.ts", "tests/**/*.test.tsx"],
+    pool: "forks",
+    maxWorkers: 2,
+    testTimeout: 30_000,
+    hookTimeout: 120_000,
+    env: { TZ: "UTC" },
+  },
+});
