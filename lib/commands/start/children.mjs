@@ -1,0 +1,99 @@
+import { spawn } from "node:child_process";
+import { closeSync, openSync } from "node:fs";
+import { setPriority } from "node:os";
+
+const GRACE_MS = 15_000;
+
+const sleep = (ms) => new Promise((resolve) => setTimeout(resolve, ms));
+
+function groupIsAlive(pid) {
+  try {
+    process.kill(-pid, 0);
+    return true;
+  } catch (error) {
+    return error.code === "EPERM";
+  }
+}
+
+function signalGroup(pid, signal) {
+  try {
+    process.kill(-pid, signal);
+  } catch (error) {
+    if (error.code !== "ESRCH") throw error;
+  }
+}
+
+/**
+ * Starts a program as the head of its own process group, so that ending it ends what it started in turn,
+ * a Ctrl-C at the terminal reaches only us, and nothing that we did not start is ever signalled.
+ * `output` is a log path, or "inherit".
+ */
+export function startChild({ name, command, args, env, cwd, output, niceness = 0 }) {
+  const log = output === "inherit" ? null : openSync(output, "a");
+  const child = spawn(command, args, {
+    cwd,
+    env,
+    detached: true,
+    stdio: ["ignore", log ?? "inherit", log ?? "inherit"],
+  });
+  if (log !== null) closeSync(log);
+  const exited = new Promise((resolve) => {
+    child.once("exit", (code, signal) => resolve({ code, signal }));
+    child.once("error", (error) => resolve({ code: null, signal: null, error }));
+  });
+  if (niceness > 0 && child.pid !== undefined) {
+    try {
+      setPriority(child.pid, niceness);
+    } catch (error) {
+      if (error.code !== "ESRCH" && error.errno === undefined) throw error;
+    }
+  }
+  return {
+    name,
+    pid: child.pid,
+    output,
+    exited,
+    isRunning: () => child.exitCode === null && child.signalCode === null,
+  };
+}
+
+/** SIGTERM to the whole group, a wait, then SIGKILL to what is left of it. */
+export async function stopChild(child, { graceMs = GRACE_MS } = {}) {
+  if (child.pid === undefined) return;
+  signalGroup(child.pid, "SIGTERM");
+  const deadlineMs = performance.now() + graceMs;
+  while (groupIsAlive(child.pid) && performance.now() < deadlineMs) await sleep(50);
+  if (groupIsAlive(child.pid)) signalGroup(child.pid, "SIGKILL");
+  await Promise.race([child.exited, sleep(2_000)]);
+}
+
+export function killChild(child) {
+  if (child.pid !== undefined) signalGroup(child.pid, "SIGKILL");
+}
+
+/** Ends a process group that an earlier start left behind. */
+export async function stopGroup(pid) {
+  await stopChild({ pid, exited: Promise.resolve() });
+}
+
+/** Runs a program to its end, handing each line of its output on; resolves with its exit code. */
+export function runToEnd({ command, args, env, cwd, onLine = () => {}, onStart = () => {} }) {
+  return new Promise((resolve, reject) => {
+    const child = spawn(command, args, { cwd, env, detached: true, stdio: ["ignore", "pipe", "pipe"] });
+    onStart(child);
+    for (const stream of [child.stdout, child.stderr]) {
+      let rest = "";
+      stream.setEncoding("utf8");
+      stream.on("data", (chunk) => {
+        const lines = (rest + chunk).split(/\r?\n|\r/);
+        rest = lines.pop() ?? "";
+        for (const line of lines) onLine(line);
+      });
+      stream.on("end", () => {
+        if (rest !== "") onLine(rest);
+      });
+    }
+    child.once("error", reject);
+    child.once("close", (code, signal) => resolve({ code: code ?? 1, signal }));
+  });
+}
