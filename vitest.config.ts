@@ -5,6 +5,7 @@ export default defineConfig({
   resolve: { alias: { "@": fileURLToPath(new URL(".", import.meta.url)).replace(/\/$/, "") } },
   test: {
     include: ["tests/**/*.test.ts", "tests/**/*.test.tsx"],
+    globalSetup: ["tests/support/global-setup.ts"],
     pool: "forks",
     maxWorkers: 2,
     testTimeout: 30_000,

@@ -1,0 +1,1 @@
+INSERT IGNORE INTO `index_head` (`name`, `seq`) VALUES ('index', 0);
