@@ -1,7 +1,7 @@
 import { mkdtempSync, rmSync } from "node:fs";
 import { join } from "node:path";
 import { runBrowserSuite } from "./start/browser-suite.mjs";
-import { runToEnd } from "./start/children.mjs";
+import { refuseNewChildren, runToEnd, stopAllChildren } from "./start/children.mjs";
 import { addCounts, closingLine, countReport, countVitest, NOTHING } from "./start/counts.mjs";
 import { formatEnv, writePrivateFile } from "./start/env-file.mjs";
 import { childEnvironment, demoEnvironment } from "./start/environment.mjs";
@@ -10,7 +10,7 @@ import { installDebianPackages, installNpmPackages } from "./start/packages.mjs"
 import { dataDir, makeDataDir, projectDir } from "./start/paths.mjs";
 import { pickPorts } from "./start/ports.mjs";
 import { Stop, say, secondsSince, stage } from "./start/progress.mjs";
-import { makeSecrets } from "./start/secrets.mjs";
+import { keepSecrets, makeSecrets, TEST_MAKERS } from "./start/secrets.mjs";
 import { SUITES, sortIntoSuites } from "./start/suites.mjs";
 
 // Far from the usual ports of `npm run up`, so that both can run side by side.
@@ -18,23 +18,15 @@ const TEST_PORTS = { site: 3600, files: 3610, payments: 3620, mail: 3630, databa
 const DEBIAN_PACKAGES = ["mariadb-server", "ffmpeg", "chromium", "sox", "rubberband-cli", "espeak-ng"];
 
 const cleanups = [];
-let activeChild = null;
 let isStopping = false;
 
 async function cleanUp() {
-  if (activeChild?.pid !== undefined && activeChild.exitCode === null) {
-    try {
-      process.kill(-activeChild.pid, "SIGTERM");
-    } catch (error) {
-      if (error.code !== "ESRCH") throw error;
-    }
-  }
   for (const cleanup of cleanups.splice(0).reverse()) await cleanup();
+  await stopAllChildren();
 }
 
-async function startTestDatabase({ dir, ports }) {
-  const secrets = makeSecrets();
-  const adminPassword = newPassword();
+async function startTestDatabase({ dir, ports, secrets }) {
+  const { adminPassword } = secrets;
   const database = await startMariadb({
     dir,
     wantedPort: ports.database,
@@ -53,7 +45,7 @@ async function startTestDatabase({ dir, ports }) {
     ...demoEnvironment({ ports, secrets, mediaDir: join(dir, "media") }),
     TEST_DATABASE_ADMIN_URL: adminUrl.replace(/\/$/, ""),
   };
-  return { database, values, secrets };
+  return { database, values };
 }
 
 async function runVitest({ title, paths, values, reportDir }) {
@@ -73,16 +65,13 @@ async function runVitest({ title, paths, values, reportDir }) {
     cwd: projectDir,
     env: childEnvironment(values),
     onLine: (line) => say(line),
-    onStart: (child) => {
-      activeChild = child;
-    },
   });
   const counts = countReport({ path: report, count: countVitest, exitCode: code });
   say(`${title}: ${closingLine(counts)} (${secondsSince(startMs)})`);
   return counts;
 }
 
-async function runAll({ values, secrets, ports, reportDir, chosenPaths }) {
+async function runAll({ values, ports, reportDir, chosenPaths }) {
   if (chosenPaths.length > 0) {
     return runVitest({ title: "Chosen tests", paths: chosenPaths, values, reportDir });
   }
@@ -93,14 +82,15 @@ async function runAll({ values, secrets, ports, reportDir, chosenPaths }) {
     total = addCounts(total, await runVitest({ title, paths: bySuite[name], values, reportDir }));
   }
   if (!isStopping)
-    total = addCounts(total, await runBrowserSuite({ values, secrets, ports, reportDir, cleanups }));
+    total = addCounts(total, await runBrowserSuite({ values, ports, runDir: reportDir, cleanups }));
   return total;
 }
 
 async function serve() {
   const dir = makeDataDir("test", "mariadb");
   const ports = await pickPorts(TEST_PORTS);
-  const { database, values } = await stage("Test database", () => startTestDatabase({ dir, ports }));
+  const secrets = keepSecrets(join(dataDir, "test", "secrets.json"), TEST_MAKERS);
+  const { database, values } = await stage("Test database", () => startTestDatabase({ dir, ports, secrets }));
   const envPath = join(dataDir, "test", "env");
   writePrivateFile(envPath, formatEnv(values));
   cleanups.push(async () => rmSync(envPath, { force: true }));
@@ -120,10 +110,11 @@ async function test(chosenPaths) {
   const runDir = mkdtempSync(join(makeDataDir("test"), "run-"));
   cleanups.push(async () => rmSync(runDir, { recursive: true, force: true }));
   const ports = await pickPorts(TEST_PORTS);
-  const { values, secrets } = await stage("Test database", () =>
-    startTestDatabase({ dir: join(runDir, "mariadb"), ports }),
+  const secrets = makeSecrets({}, TEST_MAKERS);
+  const { values } = await stage("Test database", () =>
+    startTestDatabase({ dir: join(runDir, "mariadb"), ports, secrets }),
   );
-  const total = await runAll({ values, secrets, ports, reportDir: runDir, chosenPaths });
+  const total = await runAll({ values, ports, reportDir: runDir, chosenPaths });
   await cleanUp();
   if (isStopping) return 130;
   say(`\nAll suites: ${secondsSince(startMs)}`);
@@ -135,6 +126,7 @@ for (const signal of ["SIGINT", "SIGTERM", "SIGHUP"]) {
   process.on(signal, async () => {
     if (isStopping) return;
     isStopping = true;
+    refuseNewChildren();
     say("\nStopping …");
     await cleanUp();
     process.exit(130);
@@ -146,6 +138,7 @@ const isServing = args.includes("--serve") || args.includes("--database");
 try {
   process.exitCode = await (isServing ? serve() : test(args.filter((arg) => !arg.startsWith("--"))));
 } catch (error) {
+  if (isStopping) await new Promise(() => {});
   await cleanUp();
   say(error instanceof Stop ? `\n${error.message}` : `\n${error.stack}`);
   if (!isServing) say(closingLine({ ...NOTHING, failed: 1 }));

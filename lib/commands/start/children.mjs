@@ -1,10 +1,28 @@
 import { spawn } from "node:child_process";
 import { closeSync, openSync } from "node:fs";
 import { setPriority } from "node:os";
+import { Stop } from "./progress.mjs";
 
 const GRACE_MS = 15_000;
 
 const sleep = (ms) => new Promise((resolve) => setTimeout(resolve, ms));
+
+// Every process group started here and not yet known to be gone; what is left at the end is ended.
+const started = new Set();
+let isClosed = false;
+
+function remember(child) {
+  if (child.pid !== undefined) started.add(child.pid);
+}
+
+/** From here on nothing new is started: an interrupted start must not go on behind its own clean-up. */
+export function refuseNewChildren() {
+  isClosed = true;
+}
+
+function assertOpen() {
+  if (isClosed) throw new Stop("Interrupted.");
+}
 
 function groupIsAlive(pid) {
   try {
@@ -29,6 +47,7 @@ function signalGroup(pid, signal) {
  * `output` is a log path, or "inherit".
  */
 export function startChild({ name, command, args, env, cwd, output, niceness = 0 }) {
+  assertOpen();
   const log = output === "inherit" ? null : openSync(output, "a");
   const child = spawn(command, args, {
     cwd,
@@ -36,6 +55,7 @@ export function startChild({ name, command, args, env, cwd, output, niceness = 0
     detached: true,
     stdio: ["ignore", log ?? "inherit", log ?? "inherit"],
   });
+  remember(child);
   if (log !== null) closeSync(log);
   const exited = new Promise((resolve) => {
     child.once("exit", (code, signal) => resolve({ code, signal }));
@@ -71,16 +91,28 @@ export function killChild(child) {
   if (child.pid !== undefined) signalGroup(child.pid, "SIGKILL");
 }
 
+/** Ends every group started here that still lives. */
+export async function stopAllChildren() {
+  refuseNewChildren();
+  await Promise.all([...started].filter(groupIsAlive).map((pid) => stopGroup(pid)));
+}
+
+// The last resort, when this process ends without its clean-up; a signal is all that can still be sent.
+process.on("exit", () => {
+  for (const pid of started) if (groupIsAlive(pid)) signalGroup(pid, "SIGTERM");
+});
+
 /** Ends a process group that an earlier start left behind. */
 export async function stopGroup(pid) {
   await stopChild({ pid, exited: Promise.resolve() });
 }
 
 /** Runs a program to its end, handing each line of its output on; resolves with its exit code. */
-export function runToEnd({ command, args, env, cwd, onLine = () => {}, onStart = () => {} }) {
+export function runToEnd({ command, args, env, cwd, onLine = () => {} }) {
+  assertOpen();
   return new Promise((resolve, reject) => {
     const child = spawn(command, args, { cwd, env, detached: true, stdio: ["ignore", "pipe", "pipe"] });
-    onStart(child);
+    remember(child);
     for (const stream of [child.stdout, child.stderr]) {
       let rest = "";
       stream.setEncoding("utf8");

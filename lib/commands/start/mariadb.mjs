@@ -148,7 +148,14 @@ function writeServerFiles({ dir, port, socket, account, bufferPool, isForTests, 
     for (const path of paths) chownSync(path, account.uid, account.gid);
 }
 
+const installedMark = (dir) => join(dir, "installed");
+
+/** Marked when complete: tables left by an interrupted installation would start and then fail. */
 async function createSystemTables({ dir, account }) {
+  if (existsSync(installedMark(dir))) return;
+  rmSync(join(dir, "data"), { recursive: true, force: true });
+  mkdirSync(join(dir, "data"), { mode: 0o700 });
+  if (account !== null) handOver(join(dir, "data"), account);
   // The server's own tables are made in a run of their own, without the accounts, which need them.
   const config = join(dir, "install.cnf");
   writeFileSync(config, `[mariadbd]\ndatadir=${dir}/data\ntmpdir=${dir}/tmp\n`);
@@ -168,9 +175,9 @@ async function createSystemTables({ dir, account }) {
   });
   rmSync(config, { force: true });
   if (code !== 0) {
-    rmSync(join(dir, "data"), { recursive: true, force: true });
     throw new Stop(`mariadb-install-db ended with ${code}:\n${lines.slice(-20).join("\n")}`);
   }
+  writeFileSync(installedMark(dir), "");
 }
 
 /** A server that is ready greets whoever connects; anything else on the port, or silence, is not it. */
@@ -238,7 +245,7 @@ export async function startMariadb({
   const account = prepareFolders(dir);
   const socket = socketPath(dir);
   const log = join(dir, "mariadbd.log");
-  if (!existsSync(join(dir, "data", "mysql"))) await createSystemTables({ dir, account });
+  await createSystemTables({ dir, account });
   let port = wantedPort;
   for (let attempt = 0; attempt < 3; attempt += 1) {
     port = await pickPort(port);

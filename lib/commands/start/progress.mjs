@@ -3,6 +3,9 @@ import { closeSync, fstatSync, openSync, readSync } from "node:fs";
 const TICK_MS = 1_000;
 const PLAIN_LINE_EVERY_MS = 20_000;
 
+// A reader that went away (a closed pipe or terminal) must not keep us from ending what we started.
+process.stdout.on("error", () => {});
+
 /** An expected failure: its message is all the person needs, so no stack is shown. */
 export class Stop extends Error {}
 

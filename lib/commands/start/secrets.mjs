@@ -19,19 +19,22 @@ const MAKERS = {
   businessClockAnchor: () => new Date().toISOString(),
 };
 
-export function makeSecrets(kept = {}) {
-  return Object.fromEntries(Object.entries(MAKERS).map(([name, make]) => [name, kept[name] ?? make()]));
+/** Tests make databases and accounts of their own, so they alone have an administrator. */
+export const TEST_MAKERS = { ...MAKERS, adminPassword: newPassword };
+
+export function makeSecrets(kept = {}, makers = MAKERS) {
+  return Object.fromEntries(Object.entries(makers).map(([name, make]) => [name, kept[name] ?? make()]));
 }
 
 /** Made once and kept: records signed by the first start must still verify after the hundredth. */
-export function keepSecrets(path) {
+export function keepSecrets(path, makers = MAKERS) {
   let kept = {};
   try {
     kept = JSON.parse(readFileSync(path, "utf8"));
   } catch (error) {
     if (error.code !== "ENOENT") throw error;
   }
-  const secrets = makeSecrets(kept);
+  const secrets = makeSecrets(kept, makers);
   if (JSON.stringify(secrets) !== JSON.stringify(kept))
     writePrivateFile(path, `${JSON.stringify(secrets, null, 2)}\n`);
   return secrets;
