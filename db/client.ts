@@ -21,7 +21,9 @@ function open(url: string): mysql.Pool {
     enableKeepAlive: true,
   });
   pool.on("connection", (connection) => {
-    connection.query(`SET SESSION time_zone='+00:00', tx_isolation='READ-COMMITTED', max_statement_time=${STATEMENT_SECONDS}`);
+    connection.query(
+      `SET SESSION time_zone='+00:00', tx_isolation='READ-COMMITTED', max_statement_time=${STATEMENT_SECONDS}`,
+    );
   });
   return pool;
 }

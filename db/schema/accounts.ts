@@ -35,7 +35,10 @@ export const memberships = mysqlTable(
     endsAt: at("ends_at"),
     createdAt: at("created_at").notNull(),
   },
-  (table) => [index("memberships_person").on(table.personId), index("memberships_library").on(table.libraryId, table.role)],
+  (table) => [
+    index("memberships_person").on(table.personId),
+    index("memberships_library").on(table.libraryId, table.role),
+  ],
 );
 
 export const companies = mysqlTable("companies", {

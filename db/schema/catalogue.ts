@@ -58,7 +58,10 @@ export const families = mysqlTable(
     listedAt: at("listed_at"),
     version: int("version").notNull().default(1),
   },
-  (table) => [index("families_library").on(table.libraryId, table.state), uniqueIndex("families_library_title").on(table.libraryId, table.title)],
+  (table) => [
+    index("families_library").on(table.libraryId, table.state),
+    uniqueIndex("families_library_title").on(table.libraryId, table.title),
+  ],
 );
 
 export const familyTerms = mysqlTable(
@@ -70,7 +73,10 @@ export const familyTerms = mysqlTable(
     term: ascii(40)("term").notNull(),
     position: int("position").notNull(),
   },
-  (table) => [uniqueIndex("family_terms_once").on(table.familyId, table.kind, table.term), index("family_terms_term").on(table.kind, table.term)],
+  (table) => [
+    uniqueIndex("family_terms_once").on(table.familyId, table.kind, table.term),
+    index("family_terms_term").on(table.kind, table.term),
+  ],
 );
 
 /** A version of the split; a sale uses the one valid at capture. */
@@ -101,7 +107,10 @@ export const splitShares = mysqlTable(
     shareBps: int("share_bps").notNull(),
     acceptedAt: at("accepted_at"),
   },
-  (table) => [index("split_shares_version").on(table.splitVersionId), index("split_shares_person").on(table.personId)],
+  (table) => [
+    index("split_shares_version").on(table.splitVersionId),
+    index("split_shares_person").on(table.personId),
+  ],
 );
 
 /** One version: one distinct recording, one ISRC, one master whose bytes never change. */
@@ -135,7 +144,10 @@ export const recordings = mysqlTable(
     previewKey: ascii(120)("preview_key"),
     createdAt: at("created_at").notNull(),
   },
-  (table) => [index("recordings_family").on(table.familyId, table.position), index("recordings_sha").on(table.fileSha256)],
+  (table) => [
+    index("recordings_family").on(table.familyId, table.position),
+    index("recordings_sha").on(table.fileSha256),
+  ],
 );
 
 /** The master as licensed: rendered once, hashed, immutable. */

@@ -24,7 +24,10 @@ export const deliveries = mysqlTable(
     updatedAt: at("updated_at").notNull(),
     deliveredAt: at("delivered_at"),
   },
-  (table) => [index("deliveries_deliverer").on(table.delivererId, table.state), index("deliveries_library").on(table.libraryId, table.state)],
+  (table) => [
+    index("deliveries_deliverer").on(table.delivererId, table.state),
+    index("deliveries_library").on(table.libraryId, table.state),
+  ],
 );
 
 /** One file of a delivery. A replaced file stays, with replacedBy set. */
@@ -52,7 +55,10 @@ export const deliveryVersions = mysqlTable(
     replacedBy: id("replaced_by"),
     arrivedAt: at("arrived_at").notNull(),
   },
-  (table) => [index("delivery_versions_delivery").on(table.deliveryId, table.position), index("delivery_versions_recording").on(table.recordingId)],
+  (table) => [
+    index("delivery_versions_delivery").on(table.deliveryId, table.position),
+    index("delivery_versions_recording").on(table.recordingId),
+  ],
 );
 
 /** Signed statements: every change is a new version with its own hash. */
@@ -90,7 +96,10 @@ export const deliveryWriters = mysqlTable(
     answeredAt: at("answered_at"),
     answerUntil: at("answer_until"),
   },
-  (table) => [index("delivery_writers_delivery").on(table.deliveryId), index("delivery_writers_person").on(table.personId, table.state)],
+  (table) => [
+    index("delivery_writers_delivery").on(table.deliveryId),
+    index("delivery_writers_person").on(table.personId, table.state),
+  ],
 );
 
 export const deliveryEvents = mysqlTable(

@@ -24,7 +24,10 @@ export const jobs = mysqlTable(
     createdAt: at("created_at").notNull(),
     finishedAt: at("finished_at"),
   },
-  (table) => [index("jobs_ready").on(table.state, table.priority, table.runAt), index("jobs_name").on(table.name, table.state)],
+  (table) => [
+    index("jobs_ready").on(table.state, table.priority, table.runAt),
+    index("jobs_name").on(table.name, table.state),
+  ],
 );
 
 export const mailOutbox = mysqlTable(

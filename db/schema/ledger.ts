@@ -37,7 +37,11 @@ export const ledgerEntries = mysqlTable(
     eventAt: at("event_at").notNull(),
     postedAt: at("posted_at").notNull(),
   },
-  (table) => [index("ledger_entries_posted").on(table.postedAt), index("ledger_entries_library").on(table.libraryId, table.postedAt), index("ledger_entries_order").on(table.orderId)],
+  (table) => [
+    index("ledger_entries_posted").on(table.postedAt),
+    index("ledger_entries_library").on(table.libraryId, table.postedAt),
+    index("ledger_entries_order").on(table.orderId),
+  ],
 );
 
 /** Each row moves money from one account to another: imbalance cannot be written. */

@@ -41,7 +41,12 @@ export const orders = mysqlTable(
     paidAt: at("paid_at"),
     version: int("version").notNull().default(1),
   },
-  (table) => [index("orders_company").on(table.companyId), index("orders_library").on(table.libraryId, table.placedAt), index("orders_session").on(table.checkoutSession), index("orders_intent").on(table.paymentIntent)],
+  (table) => [
+    index("orders_company").on(table.companyId),
+    index("orders_library").on(table.libraryId, table.placedAt),
+    index("orders_session").on(table.checkoutSession),
+    index("orders_intent").on(table.paymentIntent),
+  ],
 );
 
 export const orderLines = mysqlTable(
@@ -59,7 +64,10 @@ export const orderLines = mysqlTable(
     splitVersionId: id("split_version_id"),
     licenceNumber: ascii(24)("licence_number"),
   },
-  (table) => [uniqueIndex("order_lines_once").on(table.orderId, table.number), index("order_lines_family").on(table.familyId)],
+  (table) => [
+    uniqueIndex("order_lines_once").on(table.orderId, table.number),
+    index("order_lines_family").on(table.familyId),
+  ],
 );
 
 /** Gapless: the number is taken under the series row in the transaction that issues. */
@@ -107,7 +115,11 @@ export const licenceRecords = mysqlTable(
     issuedAt: at("issued_at").notNull(),
     disclosed: boolean("disclosed").notNull().default(true),
   },
-  (table) => [index("licence_records_company").on(table.companyId), index("licence_records_family").on(table.familyId), index("licence_records_library").on(table.libraryId, table.issuedAt)],
+  (table) => [
+    index("licence_records_company").on(table.companyId),
+    index("licence_records_family").on(table.familyId),
+    index("licence_records_library").on(table.libraryId, table.issuedAt),
+  ],
 );
 
 export const licenceStatusEvents = mysqlTable(

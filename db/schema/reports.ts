@@ -25,7 +25,10 @@ export const notices = mysqlTable(
     receivedAt: at("received_at").notNull(),
     version: int("version").notNull().default(1),
   },
-  (table) => [index("notices_state").on(table.state, table.receivedAt), index("notices_email").on(table.emailHash, table.receivedAt)],
+  (table) => [
+    index("notices_state").on(table.state, table.receivedAt),
+    index("notices_email").on(table.emailHash, table.receivedAt),
+  ],
 );
 
 export const noticeEvents = mysqlTable(

@@ -21,7 +21,10 @@ export const cases = mysqlTable(
     closedAt: at("closed_at"),
     version: int("version").notNull().default(1),
   },
-  (table) => [index("cases_queue").on(table.libraryId, table.state, table.dueAt), index("cases_delivery").on(table.deliveryId)],
+  (table) => [
+    index("cases_queue").on(table.libraryId, table.state, table.dueAt),
+    index("cases_delivery").on(table.deliveryId),
+  ],
 );
 
 /** One group per reference family (or reported work): answered one by one. */
@@ -115,18 +118,15 @@ export const conflictsDeclared = mysqlTable(
 );
 
 /** The four-channel file of one hit, rendered by the worker. */
-export const alignedListenings = mysqlTable(
-  "aligned_listenings",
-  {
-    id: id("id").primaryKey(),
-    hitId: id("hit_id").notNull().unique("aligned_listenings_hit"),
-    state: ascii(10)("state").notNull(),
-    fileKey: ascii(120)("file_key"),
-    spans: jsonOf<Record<string, unknown>[]>("spans").notNull(),
-    method: varchar("method", { length: 60 }),
-    createdAt: at("created_at").notNull(),
-  },
-);
+export const alignedListenings = mysqlTable("aligned_listenings", {
+  id: id("id").primaryKey(),
+  hitId: id("hit_id").notNull().unique("aligned_listenings_hit"),
+  state: ascii(10)("state").notNull(),
+  fileKey: ascii(120)("file_key"),
+  spans: jsonOf<Record<string, unknown>[]>("spans").notNull(),
+  method: varchar("method", { length: 60 }),
+  createdAt: at("created_at").notNull(),
+});
 
 /** Who opened what of whom: papers and another library's sound. */
 export const disclosures = mysqlTable(
@@ -141,5 +141,8 @@ export const disclosures = mysqlTable(
     libraryId: id("library_id"),
     at: at("at").notNull(),
   },
-  (table) => [index("disclosures_case").on(table.caseId), index("disclosures_library").on(table.libraryId, table.at)],
+  (table) => [
+    index("disclosures_case").on(table.caseId),
+    index("disclosures_library").on(table.libraryId, table.at),
+  ],
 );

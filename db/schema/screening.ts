@@ -41,7 +41,14 @@ export const recordingFingerprints = mysqlTable(
     notComparable: jsonOf<{ startS: number; endS: number; reason: string }[]>("not_comparable").notNull(),
     createdAt: at("created_at").notNull(),
   },
-  (table) => [uniqueIndex("recording_fingerprints_once").on(table.subjectKind, table.subjectId, table.channel, table.engineVersion)],
+  (table) => [
+    uniqueIndex("recording_fingerprints_once").on(
+      table.subjectKind,
+      table.subjectId,
+      table.channel,
+      table.engineVersion,
+    ),
+  ],
 );
 
 export const screeningRuns = mysqlTable(
@@ -94,7 +101,11 @@ export const hits = mysqlTable(
     lowDistinctiveness: boolean("low_distinctiveness").notNull(),
     createdAt: at("created_at").notNull(),
   },
-  (table) => [index("hits_run").on(table.runId), index("hits_reference").on(table.referenceKind, table.referenceId), index("hits_recording").on(table.recordingId)],
+  (table) => [
+    index("hits_run").on(table.runId),
+    index("hits_reference").on(table.referenceKind, table.referenceId),
+    index("hits_recording").on(table.recordingId),
+  ],
 );
 
 export const passages = mysqlTable(

@@ -20,7 +20,11 @@ const CLAIM_MAX = 10;
 const leaseEnd = () => new Date(systemNow().getTime() + LEASE_S * 1000);
 
 /** JOBS-1, JOBS-5: claims in a short transaction of its own. */
-export async function claimJobs(options: { limit: number; names?: readonly string[]; except?: readonly string[] }): Promise<ClaimedJob[]> {
+export async function claimJobs(options: {
+  limit: number;
+  names?: readonly string[];
+  except?: readonly string[];
+}): Promise<ClaimedJob[]> {
   const limit = Math.min(options.limit, CLAIM_MAX);
   if (limit < 1) return [];
   return inTransaction(async (tx) => {
@@ -55,7 +59,8 @@ export async function claimJobs(options: { limit: number; names?: readonly strin
   });
 }
 
-const mine = (job: { id: string; leaseToken: string }) => and(eq(jobs.id, job.id), eq(jobs.leaseToken, job.leaseToken), eq(jobs.state, "leased"));
+const mine = (job: { id: string; leaseToken: string }) =>
+  and(eq(jobs.id, job.id), eq(jobs.leaseToken, job.leaseToken), eq(jobs.state, "leased"));
 
 /** JOBS-2. False when the lease was lost: another worker has the job. */
 export async function completeJob(job: { id: string; leaseToken: string }): Promise<boolean> {
@@ -67,7 +72,10 @@ export async function completeJob(job: { id: string; leaseToken: string }): Prom
 }
 
 export async function failJob(job: ClaimedJob, error: unknown): Promise<void> {
-  const lastError = error instanceof Error ? `${error.name}: ${error.message}\n${error.stack ?? ""}`.slice(0, 4000) : String(error);
+  const lastError =
+    error instanceof Error
+      ? `${error.name}: ${error.message}\n${error.stack ?? ""}`.slice(0, 4000)
+      : String(error);
   const spent = job.attempts >= job.attemptsMax;
   const delayS = Math.min(600, 2 ** job.attempts) * (0.75 + Math.random() / 2);
   await db()
@@ -88,7 +96,10 @@ export async function heartbeat(job: { id: string; leaseToken: string }): Promis
   return result.affectedRows === 1;
 }
 
-export async function reportProgress(job: { id: string; leaseToken: string }, progress: { words: string; done: number; of: number }): Promise<void> {
+export async function reportProgress(
+  job: { id: string; leaseToken: string },
+  progress: { words: string; done: number; of: number },
+): Promise<void> {
   await db().update(jobs).set({ progress }).where(mine(job));
 }
 

@@ -10,7 +10,10 @@ export interface JobContext {
   signal: AbortSignal;
 }
 
-export type JobHandler<N extends MessageName> = (payload: MessagePayload<N>, context: JobContext) => Promise<void>;
+export type JobHandler<N extends MessageName> = (
+  payload: MessagePayload<N>,
+  context: JobContext,
+) => Promise<void>;
 export type Handlers = { [N in MessageName]?: { handle: JobHandler<N>; timeoutS: number; heavy?: boolean } };
 
 /**

@@ -1,7 +1,15 @@
 import { withBusinessClock } from "@/lib/kernel/clock";
 import { log, withRequestId } from "@/lib/kernel/log";
 import { type MessageName, messages } from "@/lib/kernel/messages";
-import { type ClaimedJob, claimJobs, completeJob, failJob, heartbeat, releaseLapsedLeases, reportProgress } from "./claim";
+import {
+  type ClaimedJob,
+  claimJobs,
+  completeJob,
+  failJob,
+  heartbeat,
+  releaseLapsedLeases,
+  reportProgress,
+} from "./claim";
 import type { Handlers, JobHandler } from "./handlers";
 
 export interface WorkerOptions {
@@ -20,7 +28,9 @@ const TICK_MS = 30_000;
 
 /** Claims and runs jobs until the signal; drains what is running before it returns. */
 export async function runWorker(options: WorkerOptions): Promise<void> {
-  const heavyNames = Object.entries(options.handlers).flatMap(([name, handler]) => (handler?.heavy ? [name] : []));
+  const heavyNames = Object.entries(options.handlers).flatMap(([name, handler]) =>
+    handler?.heavy ? [name] : [],
+  );
   const lightNames = Object.keys(options.handlers).filter((name) => !heavyNames.includes(name));
   const running = new Set<Promise<void>>();
   let heavyRunning = 0;
@@ -42,7 +52,8 @@ export async function runWorker(options: WorkerOptions): Promise<void> {
         await releaseLapsedLeases();
         await options.onTick?.();
       }
-      const heavy = heavyRunning === 0 && heavyNames.length ? await claimJobs({ limit: 1, names: heavyNames }) : [];
+      const heavy =
+        heavyRunning === 0 && heavyNames.length ? await claimJobs({ limit: 1, names: heavyNames }) : [];
       const room = (options.lightAtOnce ?? 4) - lightRunning;
       const light = lightNames.length ? await claimJobs({ limit: room, names: lightNames }) : [];
       for (const job of heavy) {
@@ -90,8 +101,18 @@ async function runJob(job: ClaimedJob, handlers: Handlers, stop: AbortSignal): P
     await withRequestId(job.id, () => (job.businessAt ? withBusinessClock(job.businessAt, body) : body()));
     await completeJob(job);
   } catch (error) {
-    log.error({ job: job.name, id: job.id, attempt: job.attempts, error: error instanceof Error ? error.stack : String(error) }, "job failed");
-    await failJob(job, error).catch((cause) => log.error({ error: String(cause) }, "the failure could not be stored; the lease will lapse"));
+    log.error(
+      {
+        job: job.name,
+        id: job.id,
+        attempt: job.attempts,
+        error: error instanceof Error ? error.stack : String(error),
+      },
+      "job failed",
+    );
+    await failJob(job, error).catch((cause) =>
+      log.error({ error: String(cause) }, "the failure could not be stored; the lease will lapse"),
+    );
   } finally {
     clearInterval(beat);
     stop.removeEventListener("abort", onStop);
@@ -125,6 +146,11 @@ async function withTimeout(work: Promise<void>, seconds: number, abort: AbortCon
 
 const pause = (ms: number, signal: AbortSignal) =>
   new Promise<void>((resolve) => {
-    const timer = setTimeout(resolve, ms);
-    signal.addEventListener("abort", () => (clearTimeout(timer), resolve()), { once: true });
+    const end = () => {
+      clearTimeout(timer);
+      signal.removeEventListener("abort", end);
+      resolve();
+    };
+    const timer = setTimeout(end, ms);
+    signal.addEventListener("abort", end, { once: true });
   });

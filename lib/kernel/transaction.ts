@@ -29,23 +29,20 @@ function isRetryable(error: unknown): boolean {
 
 /**
  * Runs `work` in one READ COMMITTED transaction and repeats the whole of it where the database asks for that.
- * `attempt` counts from 0: work whose outcome may be unknown looks itself up from the second attempt on.
+ * `attempt` counts from 0: work whose outcome may be unknown looks itself up from the second attempt on. With
+ * `again: "duplicate"` a duplicate key is repeated too: the other holder of the same operation id may have been first.
  */
-export async function inTransaction<T>(work: (tx: Tx, attempt: number) => Promise<T>): Promise<T> {
+export async function inTransaction<T>(
+  work: (tx: Tx, attempt: number) => Promise<T>,
+  options: { again?: "duplicate" } = {},
+): Promise<T> {
   for (let attempt = 0; ; attempt++) {
     try {
       return await db().transaction((tx) => work(tx, attempt), { isolationLevel: "read committed" });
     } catch (error) {
-      if (attempt + 1 >= ATTEMPTS || !(isRetryable(error) || (attempt < 2 && isOperationClash(error)))) throw error;
+      const mayBeTheSameOperation = options.again === "duplicate" && attempt < 2 && isDuplicateKey(error);
+      if (attempt + 1 >= ATTEMPTS || !(isRetryable(error) || mayBeTheSameOperation)) throw error;
       await new Promise((resolve) => setTimeout(resolve, (20 << attempt) * (0.5 + Math.random())));
     }
   }
-}
-
-/** The same operation id committed by another attempt meanwhile: the next attempt finds and returns its result. */
-function isOperationClash(error: unknown): boolean {
-  for (let cause: unknown = error; cause instanceof Error; cause = cause.cause) {
-    if (cause.message.includes("audit_log_operation")) return true;
-  }
-  return false;
 }

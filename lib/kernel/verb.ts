@@ -72,22 +72,28 @@ function publish<I extends z.ZodType, R>(
   kind: "command" | "query",
   call: (actor: Actor, input: unknown, options?: { operationId?: string }) => Promise<R>,
 ): Verb<I, R> {
-  const verb = Object.assign(call, { verbName: spec.name, kind, who: spec.who, input: spec.input }) as Verb<I, R>;
+  const verb = Object.assign(call, { verbName: spec.name, kind, who: spec.who, input: spec.input }) as Verb<
+    I,
+    R
+  >;
   registry.set(spec.name, verb);
   return verb;
 }
 
-export function command<const K extends ActorKind, I extends z.ZodType, S, R>(spec: CommandSpec<K, I, S, R>): Verb<I, R> {
+export function command<const K extends ActorKind, I extends z.ZodType, S, R>(
+  spec: CommandSpec<K, I, S, R>,
+): Verb<I, R> {
   return publish(spec, "command", async (rawActor, rawInput, options) => {
     const actor = admit(spec, rawActor);
     const input = parse(spec, rawInput);
     const operationId = options?.operationId ?? randomUUID();
-    return inTransaction(async (tx, attempt) => {
+    const body = async (tx: Tx, attempt: number): Promise<R> => {
       const scope = { tx, input, actor, now: businessNow() };
       await spec.guard?.(scope);
       if (options?.operationId !== undefined || attempt > 0) {
         const done = await findOperation(tx, operationId);
-        if (done && done.verb !== spec.name) throw new Bug(`operation ${operationId} was ${done.verb}, now ${spec.name}`);
+        if (done && done.verb !== spec.name)
+          throw new Bug(`operation ${operationId} was ${done.verb}, now ${spec.name}`);
         if (done) return done.result as R;
       }
       const subject = await spec.authorise(scope);
@@ -95,11 +101,14 @@ export function command<const K extends ActorKind, I extends z.ZodType, S, R>(sp
       const entry = spec.audit({ ...scope, subject, result });
       await writeAudit(tx, { operationId, verb: spec.name, actor, entry, result });
       return result;
-    });
+    };
+    return inTransaction(body, options?.operationId === undefined ? {} : { again: "duplicate" });
   });
 }
 
-export function query<const K extends ActorKind, I extends z.ZodType, S, R>(spec: QuerySpec<K, I, S, R>): Verb<I, R> {
+export function query<const K extends ActorKind, I extends z.ZodType, S, R>(
+  spec: QuerySpec<K, I, S, R>,
+): Verb<I, R> {
   return publish(spec, "query", async (rawActor, rawInput) => {
     const actor = admit(spec, rawActor);
     const input = parse(spec, rawInput);

@@ -26,7 +26,10 @@ export function action<I extends z.ZodType, R>(verb: Verb<I, R>, options: Action
     let data: R;
     try {
       const { actor } = await viewer();
-      const operation = operationId && "personId" in actor ? { operationId: `${actor.personId}:${operationId}`.slice(0, 120) } : {};
+      const operation =
+        operationId && "personId" in actor
+          ? { operationId: `${actor.personId}:${operationId}`.slice(0, 120) }
+          : {};
       data = await withRequestId(requestId, () => verb(actor, input, operation));
     } catch (error) {
       return failureOf(error, verb.verbName);

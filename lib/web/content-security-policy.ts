@@ -2,7 +2,10 @@
  * Scripts and styles are the site's own, under a nonce; the only other origin is the file store's, for the upload's PUT.
  * Attribute styles stay allowed: React writes them into server-rendered markup.
  */
-export function contentSecurityPolicy(nonce: string, options: { uploadOrigin: string | null; dev: boolean }): string {
+export function contentSecurityPolicy(
+  nonce: string,
+  options: { uploadOrigin: string | null; dev: boolean },
+): string {
   const connect = ["'self'", ...(options.uploadOrigin ? [options.uploadOrigin] : [])];
   return [
     "default-src 'none'",

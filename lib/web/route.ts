@@ -28,7 +28,10 @@ const MUTATING = new Set(["POST", "PUT", "PATCH", "DELETE"]);
 
 /** The one wrapper for our own route handlers: Origin, parsing, who is asking, errors as JSON with their status. */
 export function route<P extends z.ZodType, Q extends z.ZodType>(spec: RouteSpec<P, Q>) {
-  return async (request: NextRequest, context: { params: Promise<Record<string, string | string[]>> }): Promise<Response> => {
+  return async (
+    request: NextRequest,
+    context: { params: Promise<Record<string, string | string[]>> },
+  ): Promise<Response> => {
     const requestId = request.headers.get("x-request-id") ?? "route";
     return withRequestId(requestId, async () => {
       try {
@@ -39,7 +42,9 @@ export function route<P extends z.ZodType, Q extends z.ZodType>(spec: RouteSpec<
         const body = MUTATING.has(request.method) && isJson ? await request.json().catch(() => null) : null;
         const { actor } = await viewer();
         const answer = await spec.handle({ actor, params, search, body, request });
-        return answer instanceof Response ? answer : Response.json(answer, { headers: { "cache-control": "no-store" } });
+        return answer instanceof Response
+          ? answer
+          : Response.json(answer, { headers: { "cache-control": "no-store" } });
       } catch (error) {
         const { ok: _ok, ...failure } = failureOf(error, `${request.method} ${request.nextUrl.pathname}`);
         const status = failure.code === "unexpected" ? 500 : statusOf[failure.code];
@@ -52,12 +57,15 @@ export function route<P extends z.ZodType, Q extends z.ZodType>(spec: RouteSpec<
 function checkOrigin(request: NextRequest): void {
   if (!MUTATING.has(request.method)) return;
   const origin = request.headers.get("origin");
-  if (origin !== new URL(env.SITE_URL).origin) throw new Forbidden("This request did not come from a page of this site.");
+  if (origin !== new URL(env.SITE_URL).origin)
+    throw new Forbidden("This request did not come from a page of this site.");
 }
 
 function parse<S extends z.ZodType>(schema: S | undefined, raw: unknown): z.output<S> {
   if (!schema) return undefined as z.output<S>;
   const parsed = schema.safeParse(raw);
   if (parsed.success) return parsed.data;
-  throw new Invalid(parsed.error.issues.map((issue) => `${issue.path.join(".")}: ${issue.message}`).join("; "));
+  throw new Invalid(
+    parsed.error.issues.map((issue) => `${issue.path.join(".")}: ${issue.message}`).join("; "),
+  );
 }

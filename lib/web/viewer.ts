@@ -3,7 +3,7 @@ import { cookies } from "next/headers";
 import { getServerSession } from "next-auth";
 import { cache } from "react";
 import { authOptions, type RoleChoice, resolveViewer } from "@/lib/accounts";
-import { ANONYMOUS, type Actor } from "@/lib/kernel/actor";
+import { type Actor, ANONYMOUS } from "@/lib/kernel/actor";
 
 export interface Viewer {
   actor: Actor;
@@ -20,5 +20,7 @@ export const viewer = cache(async (): Promise<Viewer> => {
   const claim = session?.sedgewren;
   if (!claim) return { actor: ANONYMOUS, person: null, roles: [] };
   const chosen = (await cookies()).get(roleCookieName)?.value ?? null;
-  return (await resolveViewer({ ...claim, membershipId: chosen })) ?? { actor: ANONYMOUS, person: null, roles: [] };
+  return (
+    (await resolveViewer({ ...claim, membershipId: chosen })) ?? { actor: ANONYMOUS, person: null, roles: [] }
+  );
 });

@@ -7,7 +7,10 @@ import { failureOf } from "./failure";
  * A signed message from a hosted far end. `verify` gets the raw body and throws where the signature is wrong (answered
  * 400, not repeated usefully); `accept` stores the event and answers at once: the work is a job.
  */
-export function webhook<E>(spec: { verify: (rawBody: string, headers: Headers) => E; accept: (event: E) => Promise<void> }) {
+export function webhook<E>(spec: {
+  verify: (rawBody: string, headers: Headers) => E;
+  accept: (event: E) => Promise<void>;
+}) {
   return async (request: NextRequest): Promise<Response> =>
     withRequestId(request.headers.get("x-request-id") ?? "webhook", async () => {
       const rawBody = await request.text();

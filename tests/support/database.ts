@@ -17,11 +17,16 @@ const APP = { name: "sedgewren_test_app", password: "app-user-of-the-test-databa
 function adminUrl(): URL {
   const fromFile = () => {
     const file = `${root}.data/test/env`;
-    const line = existsSync(file) ? readFileSync(file, "utf8").match(/^TEST_DATABASE_ADMIN_URL=(.+)$/m) : null;
+    const line = existsSync(file)
+      ? readFileSync(file, "utf8").match(/^TEST_DATABASE_ADMIN_URL=(.+)$/m)
+      : null;
     return line?.[1];
   };
   const url = process.env.TEST_DATABASE_ADMIN_URL ?? fromFile();
-  if (!url) throw new Error("No test database: run `npm test`, or `node lib/commands/test.mjs --serve` beside vitest.");
+  if (!url)
+    throw new Error(
+      "No test database: run `npm test`, or `node lib/commands/test.mjs --serve` beside vitest.",
+    );
   return new URL(url);
 }
 
@@ -41,7 +46,10 @@ async function prepare(): Promise<string> {
   const name = `sedgewren_test_${process.ppid}_${process.env.VITEST_POOL_ID ?? "0"}_${hash}`;
   const admin = await mysql.createConnection({ uri: url.href, multipleStatements: false });
   try {
-    const [found] = await admin.query<mysql.RowDataPacket[]>("select 1 from information_schema.tables where table_schema = ? and table_name = 'sw_ready'", [name]);
+    const [found] = await admin.query<mysql.RowDataPacket[]>(
+      "select 1 from information_schema.tables where table_schema = ? and table_name = 'sw_ready'",
+      [name],
+    );
     if (found.length === 0) {
       await admin.query(`drop database if exists \`${name}\``);
       await admin.query(`create database \`${name}\` character set utf8mb4 collate utf8mb4_unicode_ci`);
@@ -59,7 +67,10 @@ async function prepare(): Promise<string> {
 async function grant(admin: mysql.Connection, name: string): Promise<void> {
   const appendOnly = new Set(JSON.parse(readFileSync(`${root}db/append-only.json`, "utf8")) as string[]);
   await admin.query(`create user if not exists '${APP.name}'@'%' identified by '${APP.password}'`);
-  const [tables] = await admin.query<mysql.RowDataPacket[]>("select table_name as name from information_schema.tables where table_schema = ?", [name]);
+  const [tables] = await admin.query<mysql.RowDataPacket[]>(
+    "select table_name as name from information_schema.tables where table_schema = ?",
+    [name],
+  );
   for (const table of tables) {
     const rights = appendOnly.has(table.name) ? "select, insert" : "select, insert, update, delete";
     await admin.query(`grant ${rights} on \`${name}\`.\`${table.name}\` to '${APP.name}'@'%'`);
@@ -70,7 +81,9 @@ const TEST_ENVIRONMENT: Record<string, string> = {
   SEDGEWREN_MODE: "demo",
   SITE_URL: "http://127.0.0.1:3400",
   NEXTAUTH_SECRET: "a-secret-for-tests-that-is-long-enough",
-  UPLOADTHING_TOKEN: Buffer.from(JSON.stringify({ apiKey: "sk_live_test", appId: "test", regions: ["lo1"] })).toString("base64"),
+  UPLOADTHING_TOKEN: Buffer.from(
+    JSON.stringify({ apiKey: "sk_live_test", appId: "test", regions: ["lo1"] }),
+  ).toString("base64"),
   STRIPE_SECRET_KEY: "sk_test_of_tests",
   STRIPE_WEBHOOK_SECRET: "whsec_of_tests",
   RESEND_API_KEY: "re_of_tests",
