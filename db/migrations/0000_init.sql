@@ -20,7 +20,8 @@ CREATE TABLE `confirmed_names` (
 	`confirmed_by` varchar(40) character set ascii collate ascii_bin NOT NULL,
 	`confirmed_at` datetime(3) NOT NULL,
 	CONSTRAINT `confirmed_names_id` PRIMARY KEY(`id`),
-	CONSTRAINT `confirmed_names_once` UNIQUE(`library_id`,`person_id`)
+	CONSTRAINT `confirmed_names_once` UNIQUE(`library_id`,`person_id`),
+	CONSTRAINT `confirmed_names_ipi` UNIQUE(`library_id`,`ipi`)
 );
 --> statement-breakpoint
 CREATE TABLE `invitations` (
@@ -30,7 +31,10 @@ CREATE TABLE `invitations` (
 	`role` varchar(20) character set ascii collate ascii_bin NOT NULL,
 	`library_id` varchar(40) character set ascii collate ascii_bin,
 	`company_id` varchar(40) character set ascii collate ascii_bin,
+	`scope_name` varchar(200) NOT NULL,
 	`may_approve` boolean NOT NULL DEFAULT false,
+	`granted` json NOT NULL,
+	`ends_at` datetime(3),
 	`token_hash` varchar(64) character set ascii collate ascii_bin NOT NULL,
 	`invited_by` varchar(40) character set ascii collate ascii_bin NOT NULL,
 	`expires_at` datetime(3) NOT NULL,
@@ -46,9 +50,11 @@ CREATE TABLE `memberships` (
 	`role` varchar(20) character set ascii collate ascii_bin NOT NULL,
 	`library_id` varchar(40) character set ascii collate ascii_bin,
 	`company_id` varchar(40) character set ascii collate ascii_bin,
+	`scope_name` varchar(200) NOT NULL,
 	`may_approve` boolean NOT NULL DEFAULT false,
 	`granted` json NOT NULL,
 	`ends_at` datetime(3),
+	`last_used_at` datetime(3),
 	`created_at` datetime(3) NOT NULL,
 	CONSTRAINT `memberships_id` PRIMARY KEY(`id`)
 );
@@ -59,9 +65,11 @@ CREATE TABLE `people` (
 	`name` varchar(200) NOT NULL,
 	`password_hash` varchar(255) character set ascii collate ascii_bin,
 	`totp_secret` varchar(255) character set ascii collate ascii_bin,
+	`totp_pending_secret` varchar(255) character set ascii collate ascii_bin,
 	`totp_confirmed_at` datetime(3),
 	`totp_last_step` int,
 	`email_verified_at` datetime(3),
+	`link_used_at` datetime(3),
 	`session_version` int NOT NULL DEFAULT 1,
 	`disabled_at` datetime(3),
 	`time_zone` varchar(60) character set ascii collate ascii_bin NOT NULL DEFAULT 'Etc/UTC',
@@ -74,8 +82,9 @@ CREATE TABLE `people` (
 CREATE TABLE `sign_in_attempts` (
 	`subject_hash` varchar(64) character set ascii collate ascii_bin NOT NULL,
 	`window_start` datetime(3) NOT NULL,
-	`failures` int NOT NULL,
-	CONSTRAINT `sign_in_attempts_window` UNIQUE(`subject_hash`,`window_start`)
+	`attempts` int NOT NULL,
+	`next_at` datetime(3) NOT NULL,
+	CONSTRAINT `sign_in_attempts_subject_hash` PRIMARY KEY(`subject_hash`)
 );
 --> statement-breakpoint
 CREATE TABLE `sign_in_links` (

@@ -9,10 +9,14 @@ export const people = mysqlTable("people", {
   passwordHash: ascii(255)("password_hash"),
   /** Encrypted with FIELD_KEY; null until a second factor is set up. */
   totpSecret: ascii(255)("totp_secret"),
+  /** A second factor being set up; it takes the place of the one in use when its first code is given. */
+  totpPendingSecret: ascii(255)("totp_pending_secret"),
   totpConfirmedAt: at("totp_confirmed_at"),
   /** Last accepted 30-second step: a code works once. */
   totpLastStep: int("totp_last_step"),
   emailVerifiedAt: at("email_verified_at"),
+  /** Last sign-in by an e-mailed link: shortly after it a new password may be set without the old one. */
+  linkUsedAt: at("link_used_at"),
   /** Raised by sign-out everywhere: older session tokens stop working. */
   sessionVersion: int("session_version").notNull().default(1),
   disabledAt: at("disabled_at"),
@@ -30,9 +34,13 @@ export const memberships = mysqlTable(
     /** Null for the marketplace's own moderators and accountants, and for admins and buyers. */
     libraryId: id("library_id"),
     companyId: id("company_id"),
+    /** Name of the library or company when the role was given, so that a role can be named without asking another room. */
+    scopeName: varchar("scope_name", { length: 200 }).notNull(),
     mayApprove: boolean("may_approve").notNull().default(false),
     granted: jsonOf<string[]>("granted").notNull(),
+    /** From then on the role is gone: an auditor's stated time, or the moment a role was ended. */
     endsAt: at("ends_at"),
+    lastUsedAt: at("last_used_at"),
     createdAt: at("created_at").notNull(),
   },
   (table) => [
@@ -58,7 +66,10 @@ export const invitations = mysqlTable("invitations", {
   role: ascii(20)("role").notNull(),
   libraryId: id("library_id"),
   companyId: id("company_id"),
+  scopeName: varchar("scope_name", { length: 200 }).notNull(),
   mayApprove: boolean("may_approve").notNull().default(false),
+  granted: jsonOf<string[]>("granted").notNull(),
+  endsAt: at("ends_at"),
   tokenHash: ascii(64)("token_hash").notNull().unique("invitations_token"),
   invitedBy: id("invited_by").notNull(),
   expiresAt: at("expires_at").notNull(),
@@ -80,7 +91,10 @@ export const confirmedNames = mysqlTable(
     confirmedBy: id("confirmed_by").notNull(),
     confirmedAt: at("confirmed_at").notNull(),
   },
-  (table) => [uniqueIndex("confirmed_names_once").on(table.libraryId, table.personId)],
+  (table) => [
+    uniqueIndex("confirmed_names_once").on(table.libraryId, table.personId),
+    uniqueIndex("confirmed_names_ipi").on(table.libraryId, table.ipi),
+  ],
 );
 
 export const signInLinks = mysqlTable("sign_in_links", {
@@ -89,13 +103,11 @@ export const signInLinks = mysqlTable("sign_in_links", {
   expiresAt: at("expires_at").notNull(),
 });
 
-export const signInAttempts = mysqlTable(
-  "sign_in_attempts",
-  {
-    /** Hash of address or account: what is slowed, not who it is. */
-    subjectHash: ascii(64)("subject_hash").notNull(),
-    windowStart: at("window_start").notNull(),
-    failures: int("failures").notNull(),
-  },
-  (table) => [uniqueIndex("sign_in_attempts_window").on(table.subjectHash, table.windowStart)],
-);
+export const signInAttempts = mysqlTable("sign_in_attempts", {
+  /** Keyed hash of an account, an address or both together: what is slowed, not who it is. */
+  subjectHash: ascii(64)("subject_hash").primaryKey(),
+  windowStart: at("window_start").notNull(),
+  attempts: int("attempts").notNull(),
+  /** No attempt before this moment; attempts at the same time are given one moment after the other. */
+  nextAt: at("next_at").notNull(),
+});
