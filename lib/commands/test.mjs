@@ -5,7 +5,7 @@ import { refuseNewChildren, runToEnd, stopAllChildren } from "./start/children.m
 import { addCounts, closingLine, countReport, countVitest, NOTHING } from "./start/counts.mjs";
 import { formatEnv, writePrivateFile } from "./start/env-file.mjs";
 import { childEnvironment, demoEnvironment } from "./start/environment.mjs";
-import { databaseUrl, newPassword, startMariadb, TEST_ADMIN } from "./start/mariadb.mjs";
+import { databaseUrl, startMariadb, TEST_ADMIN } from "./start/mariadb.mjs";
 import { installDebianPackages, installNpmPackages } from "./start/packages.mjs";
 import { dataDir, makeDataDir, projectDir } from "./start/paths.mjs";
 import { pickPorts } from "./start/ports.mjs";

@@ -35,6 +35,25 @@ export function readLock(path) {
   }
 }
 
+/** One process at a time removes a dead holder's lock, or a slow one would remove its successor's. */
+function removeStale(path, draft) {
+  const breaker = `${path}.breaking`;
+  try {
+    linkSync(draft, breaker);
+  } catch (error) {
+    if (error.code !== "EEXIST") throw error;
+    if (!isSameProcessAlive(readLock(breaker))) rmSync(breaker, { force: true });
+    return;
+  }
+  try {
+    if (!isSameProcessAlive(readLock(path))) rmSync(path, { force: true });
+  } finally {
+    rmSync(breaker, { force: true });
+  }
+}
+
+const pause = (ms) => Atomics.wait(new Int32Array(new SharedArrayBuffer(4)), 0, 0, ms);
+
 /**
  * Takes the lock file at `path` for this process. Returns `{ release }`, or `{ holder }` when a living
  * process holds it. A lock whose holder is gone is removed and taken. The file appears complete or not
@@ -44,7 +63,7 @@ export function takeLock(path, details = {}) {
   const draft = `${path}.${process.pid}`;
   writeFileSync(draft, JSON.stringify({ ...describeProcess(process.pid), ...details }), { mode: 0o600 });
   try {
-    for (let attempt = 0; attempt < 5; attempt += 1) {
+    for (let attempt = 0; attempt < 100; attempt += 1) {
       try {
         linkSync(draft, path);
         return {
@@ -57,7 +76,8 @@ export function takeLock(path, details = {}) {
       }
       const holder = readLock(path);
       if (holder !== null && isSameProcessAlive(holder)) return { holder };
-      rmSync(path, { force: true });
+      removeStale(path, draft);
+      pause(5);
     }
     throw new Error(`could not take ${path}: it is taken and dropped again and again`);
   } finally {

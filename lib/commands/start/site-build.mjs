@@ -10,6 +10,7 @@ import {
 } from "node:fs";
 import { dirname, join, relative } from "node:path";
 import { runToEnd } from "./children.mjs";
+import { keepingCompilerConfig } from "./compiler-config.mjs";
 import { childEnvironment } from "./environment.mjs";
 import { projectDir } from "./paths.mjs";
 import { Stop, tailOf } from "./progress.mjs";
@@ -61,20 +62,18 @@ export async function buildSite({ distDir, values, log, report }) {
   mkdirSync(dirname(log), { recursive: true });
   const marker = join(projectDir, distDir, MARKER);
   rmSync(marker, { force: true });
-  const config = join(projectDir, "tsconfig.json");
-  const configBefore = readFileSync(config);
-  const { code } = await runToEnd({
-    command: process.execPath,
-    args: [join(projectDir, "node_modules/next/dist/bin/next"), "build"],
-    cwd: projectDir,
-    env: childEnvironment({ ...values, NODE_ENV: "production", NEXT_DIST_DIR: distDir }),
-    onLine(line) {
-      appendFileSync(log, `${line}\n`);
-      if (line.trim() !== "") report(line.trim());
-    },
-  });
-  // The build adds its own folder to the compiler's list of sources; a start leaves no change behind.
-  if (!readFileSync(config).equals(configBefore)) writeFileSync(config, configBefore);
+  const { code } = await keepingCompilerConfig(() =>
+    runToEnd({
+      command: process.execPath,
+      args: [join(projectDir, "node_modules/next/dist/bin/next"), "build"],
+      cwd: projectDir,
+      env: childEnvironment({ ...values, NODE_ENV: "production", NEXT_DIST_DIR: distDir }),
+      onLine(line) {
+        appendFileSync(log, `${line}\n`);
+        if (line.trim() !== "") report(line.trim());
+      },
+    }),
+  );
   if (code !== 0) throw new Stop(`The site did not build (${code}):\n${tailOf(log, 40)}`);
   writeFileSync(marker, sources);
   return "built";
