@@ -1,6 +1,7 @@
 import { closeSync, fstatSync, openSync, readSync } from "node:fs";
 
 const TICK_MS = 1_000;
+const PLAIN_FIRST_LINE_MS = 2_000;
 const PLAIN_LINE_EVERY_MS = 20_000;
 
 // A reader that went away (a closed pipe or terminal) must not keep us from ending what we started.
@@ -19,25 +20,24 @@ export function secondsSince(startMs) {
 
 /**
  * Runs one named stage and prints what it does and how long it took. `body` gets `report`, which
- * replaces the running text; on a terminal the line is redrawn, elsewhere a new line comes every
- * twenty seconds so that a log shows life without flooding.
+ * replaces the running text. On a terminal the line is redrawn; elsewhere a stage that takes long says
+ * so after two seconds and then every twenty, so that a log shows life without flooding.
  */
 export async function stage(name, body) {
   const startMs = performance.now();
   const terminal = process.stdout.isTTY === true;
   let text = "";
-  let printedMs = startMs;
+  let nextLineMs = startMs + PLAIN_FIRST_LINE_MS;
   const draw = () => {
     const line = `  ${name}${text === "" ? " …" : `: ${text}`}  ${secondsSince(startMs)}`;
     if (terminal) process.stdout.write(`\r\x1b[2K${line.slice(0, (process.stdout.columns ?? 80) - 1)}`);
-    else if (performance.now() - printedMs >= PLAIN_LINE_EVERY_MS) {
-      printedMs = performance.now();
+    else if (performance.now() >= nextLineMs) {
+      nextLineMs = performance.now() + PLAIN_LINE_EVERY_MS;
       say(line);
     }
   };
   const timer = setInterval(draw, TICK_MS);
-  if (terminal) draw();
-  else say(`  ${name} …`);
+  draw();
   const clear = () => {
     clearInterval(timer);
     if (terminal) process.stdout.write("\r\x1b[2K");
