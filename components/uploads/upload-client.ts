@@ -1,0 +1,112 @@
+import { genUploader } from "uploadthing/client";
+import type { UploadRouter, UploadSlug } from "@/lib/uploads";
+
+export interface UploadProgress {
+  sentBytes: number;
+  totalBytes: number;
+  /** At the pace of the last seconds; null while it is not known or the upload is paused. */
+  secondsLeft: number | null;
+}
+
+export interface UploadTask {
+  file: File;
+  pause(): void;
+  resume(): void;
+  /** The key of the stored file and what the site answered about it. Rejects with a sentence that can be shown. */
+  done: Promise<{ key: string; answer: Record<string, string> | null }>;
+}
+
+export interface StartUpload {
+  slug: UploadSlug;
+  /** The delivery, case or notice that the file belongs to. */
+  subjectId: string;
+  file: File;
+  onProgress(progress: UploadProgress): void;
+}
+
+/** The pace is taken over this long, so that one slow second does not move the estimate about. */
+const PACE_WINDOW_MS = 8000;
+
+interface Sample {
+  atMs: number;
+  sentBytes: number;
+}
+
+/** Time left from the pace of the last samples. Exported for its test. */
+export function secondsLeft(samples: readonly Sample[], totalBytes: number): number | null {
+  const first = samples[0];
+  const last = samples.at(-1);
+  if (!first || !last || last.atMs - first.atMs < 500) return null;
+  const bytesPerMs = (last.sentBytes - first.sentBytes) / (last.atMs - first.atMs);
+  if (bytesPerMs <= 0) return null;
+  return Math.ceil((totalBytes - last.sentBytes) / bytesPerMs / 1000);
+}
+
+class Pace {
+  private samples: Sample[] = [];
+
+  add(sentBytes: number): void {
+    const atMs = performance.now();
+    this.samples = [
+      ...this.samples.filter((sample) => atMs - sample.atMs <= PACE_WINDOW_MS),
+      { atMs, sentBytes },
+    ];
+  }
+
+  clear(): void {
+    this.samples = [];
+  }
+
+  left(totalBytes: number): number | null {
+    return secondsLeft(this.samples, totalBytes);
+  }
+}
+
+function sentence(error: unknown): Error {
+  const said = error instanceof Error && error.message ? error.message : "The upload stopped.";
+  return new Error(said, { cause: error });
+}
+
+const { createUpload } = genUploader<UploadRouter>({ url: "/api/uploadthing", package: "sedgewren" });
+
+/** Starts one upload that can be paused and resumed; the bytes the store holds are never sent again. */
+export async function startUpload({ slug, subjectId, file, onProgress }: StartUpload): Promise<UploadTask> {
+  const pace = new Pace();
+  let isPaused = false;
+  let sentBytes = 0;
+  const report = () =>
+    onProgress({ sentBytes, totalBytes: file.size, secondsLeft: isPaused ? null : pace.left(file.size) });
+  const upload = await createUpload(slug, {
+    files: [file],
+    input: { subjectId },
+    onUploadProgress: ({ loaded }) => {
+      // The body carries a little more than the file itself.
+      sentBytes = Math.min(loaded, file.size);
+      pace.add(sentBytes);
+      report();
+    },
+  }).catch((error: unknown) => {
+    throw sentence(error);
+  });
+  return {
+    file,
+    pause: () => {
+      if (isPaused) return;
+      isPaused = true;
+      pace.clear();
+      upload.pauseUpload(file);
+      report();
+    },
+    resume: () => {
+      if (!isPaused) return;
+      isPaused = false;
+      upload.resumeUpload(file);
+    },
+    done: upload.done(file).then(
+      (result) => ({ key: result.key, answer: result.serverData }),
+      (error: unknown) => {
+        throw sentence(error);
+      },
+    ),
+  };
+}
