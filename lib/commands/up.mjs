@@ -1,5 +1,6 @@
 import { existsSync, readFileSync } from "node:fs";
 import { join } from "node:path";
+import { refuseNewChildren, stopAllChildren } from "./start/children.mjs";
 import { formatEnv, readEnvFile, writePrivateFile } from "./start/env-file.mjs";
 import { demoEnvironment, USUAL_PORTS } from "./start/environment.mjs";
 import { startMariadb } from "./start/mariadb.mjs";
