@@ -40,9 +40,9 @@ export async function makeCompany(values: Partial<typeof companies.$inferInsert>
   return id;
 }
 
-export async function makeMembership(values: Omit<typeof memberships.$inferInsert, "id" | "createdAt" | "granted"> & { granted?: string[] }): Promise<string> {
+export async function makeMembership(values: Omit<typeof memberships.$inferInsert, "id" | "createdAt" | "granted" | "scopeName"> & { granted?: string[]; scopeName?: string }): Promise<string> {
   const id = newId("mem");
-  await db().insert(memberships).values({ granted: [], ...values, id, createdAt: new Date() });
+  await db().insert(memberships).values({ granted: [], scopeName: "A library", ...values, id, createdAt: new Date() });
   return id;
 }
 
