@@ -120,3 +120,13 @@ export function startOfDay(date: CivilDate, zone: string): Date {
 export function endOfDay(date: CivilDate, zone: string): Date {
   return new Date(startOfDay(addDays(date, 1), zone).getTime() - SECOND_MS);
 }
+
+const MONTHS = "January February March April May June July August September October November December".split(
+  " ",
+);
+
+/** "20 March 2026" */
+export function formatCivilDate(date: CivilDate): string {
+  utcMidnight(date);
+  return `${Number(date.slice(8))} ${MONTHS[Number(date.slice(5, 7)) - 1]} ${Number(date.slice(0, 4))}`;
+}
