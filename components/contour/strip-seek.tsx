@@ -1,8 +1,8 @@
 "use client";
 
-import { type KeyboardEvent, type ReactNode, useRef } from "react";
+import { type KeyboardEvent, type ReactNode, useEffect, useRef } from "react";
 import type { PlayerTrack } from "@/components/player/player-engine";
-import { usePlayer } from "@/components/player/use-player";
+import { usePlayer, usePlayerEngine } from "@/components/player/use-player";
 import { cx } from "@/components/ui/cx";
 import { fmt } from "@/components/ui/format";
 import { axisInstant, type CutPiece, versionInstant } from "./axis";
@@ -21,6 +21,8 @@ interface StripSeekProps {
   children: ReactNode;
   /** Leave the playhead to a layer above. */
   bare?: boolean;
+  /** A docked strip does not count as the strip being in sight. */
+  docked?: boolean;
 }
 
 const STEP_S = 5;
@@ -54,10 +56,36 @@ export function keyTargetS(
 
 /** Makes a drawn strip play: a press goes there, space plays and stops, arrows move. */
 export function StripSeek(props: StripSeekProps) {
-  const { track, label, durationS, scaleS, pieces, sectionStartsS = [], className, children, bare } = props;
+  const {
+    track,
+    label,
+    durationS,
+    scaleS,
+    pieces,
+    sectionStartsS = [],
+    className,
+    children,
+    bare,
+    docked,
+  } = props;
   const { state, load, toggle, seek, positionS } = usePlayer();
   const box = useRef<HTMLDivElement>(null);
   const isLoaded = state.track?.id === track.id;
+  const engine = usePlayerEngine();
+  useEffect(() => {
+    const strip = box.current;
+    if (!strip || !isLoaded || docked) return;
+    const id = Symbol("strip");
+    const watch = new IntersectionObserver((entries) => {
+      const latest = entries.at(-1);
+      if (latest) engine.setSight(id, latest.isIntersecting);
+    });
+    watch.observe(strip);
+    return () => {
+      watch.disconnect();
+      engine.setSight(id, null);
+    };
+  }, [engine, isLoaded, docked]);
   const positionNowS = isLoaded ? axisInstant(pieces, positionS()) : 0;
 
   const goTo = (axisS: number) => {

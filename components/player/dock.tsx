@@ -83,6 +83,7 @@ function DockedTrack({ track, place }: { track: PlayerTrack; place: "table" | "f
         <Clock track={track} />
       </div>
       <StripSeek
+        docked
         className="my-1 h-7"
         durationS={track.durationS}
         label={track.title}
