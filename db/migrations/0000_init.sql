@@ -965,6 +965,18 @@ CREATE TABLE `register_entries` (
 	CONSTRAINT `register_entries_id` PRIMARY KEY(`id`)
 );
 --> statement-breakpoint
+CREATE TABLE `screening_requests` (
+	`recording_id` varchar(40) character set ascii collate ascii_bin NOT NULL,
+	`family_id` varchar(40) character set ascii collate ascii_bin NOT NULL,
+	`library_id` varchar(40) character set ascii collate ascii_bin NOT NULL,
+	`deliverer_id` varchar(40) character set ascii collate ascii_bin NOT NULL,
+	`writer_ids` json NOT NULL,
+	`declared_loops` json NOT NULL,
+	`expects_family_match` boolean NOT NULL,
+	`requested_at` datetime(3) NOT NULL,
+	CONSTRAINT `screening_requests_recording_id` PRIMARY KEY(`recording_id`)
+);
+--> statement-breakpoint
 CREATE TABLE `screening_runs` (
 	`id` varchar(40) character set ascii collate ascii_bin NOT NULL,
 	`recording_id` varchar(40) character set ascii collate ascii_bin NOT NULL,

@@ -176,3 +176,18 @@ export const registerEntries = mysqlTable(
   },
   (table) => [index("register_entries_kind").on(table.kind)],
 );
+
+/** What a screening must know of the delivery behind a recording, told by deliveries when it is signed. */
+export const screeningRequests = mysqlTable("screening_requests", {
+  recordingId: id("recording_id").primaryKey(),
+  familyId: id("family_id").notNull(),
+  libraryId: id("library_id").notNull(),
+  delivererId: id("deliverer_id").notNull(),
+  /** Writers who have accepted, besides the deliverer: a family link counts only for them or the library itself. */
+  writerIds: jsonOf<string[]>("writer_ids").notNull(),
+  /** Codes of registered loops that this delivery declares with a paper. */
+  declaredLoops: jsonOf<string[]>("declared_loops").notNull(),
+  /** Head or cutdown: whether a match with the family is to be expected. */
+  expectsFamilyMatch: boolean("expects_family_match").notNull(),
+  requestedAt: at("requested_at").notNull(),
+});

@@ -78,3 +78,33 @@ export async function splitAt(reader: Reader, familyId: string, at: Date) {
     publishers: shares.filter((share) => share.side === "publisher"),
   };
 }
+
+/** The newest split's writers of each family, by family id. */
+export async function splitsNow(reader: Reader, familyIds: readonly string[]) {
+  if (familyIds.length === 0)
+    return new Map<string, { personId: string | null; name: string; shareBps: number }[]>();
+  const rows = await reader
+    .select({
+      familyId: splitVersions.familyId,
+      version: splitVersions.version,
+      side: splitShares.side,
+      personId: splitShares.personId,
+      name: splitShares.name,
+      shareBps: splitShares.shareBps,
+    })
+    .from(splitShares)
+    .innerJoin(splitVersions, eq(splitVersions.id, splitShares.splitVersionId))
+    .where(inArray(splitVersions.familyId, [...familyIds]))
+    .orderBy(asc(splitVersions.version), asc(splitShares.position));
+  const newest = new Map<string, number>();
+  for (const row of rows) newest.set(row.familyId, Math.max(row.version, newest.get(row.familyId) ?? 0));
+  const byFamily = new Map<string, { personId: string | null; name: string; shareBps: number }[]>();
+  for (const row of rows) {
+    if (row.side !== "writer" || row.version !== newest.get(row.familyId)) continue;
+    byFamily.set(row.familyId, [
+      ...(byFamily.get(row.familyId) ?? []),
+      { personId: row.personId, name: row.name, shareBps: row.shareBps },
+    ]);
+  }
+  return byFamily;
+}

@@ -19,6 +19,7 @@ export {
   recordingsBySha256,
   recordingsOfFamily,
   splitAt,
+  splitsNow,
 } from "./for-rooms";
 export {
   type FamilyRegistration,

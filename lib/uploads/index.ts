@@ -1,4 +1,5 @@
 export { UploadError, type UploadErrorReason } from "./errors";
+export { withLocalCopy } from "./local-copy";
 export { UPLOAD_WINDOW_H, type UploadSlug, uploadLimits, uploadSlugs } from "./states";
 export {
   type ByteRange,

@@ -1,0 +1,31 @@
+export { admitRecording } from "./admit-recording";
+export { announceReported } from "./announce-reported";
+export { coveredS, type DeliveryFacts, type ExplainedHit, explainHits, outcomeOf } from "./explain";
+export { readHead, readIndexChanges, storeFingerprints } from "./fingerprints";
+export {
+  certificateOf,
+  currentRun,
+  currentRuns,
+  type HitRow,
+  hitsByIds,
+  hitsOf,
+  indexSize,
+  listLoops,
+  notComparableSpans,
+  type PassageRow,
+} from "./for-rooms";
+export { FoundHit, FoundPassage } from "./found";
+export { changeReference } from "./hold-reference";
+export { registerEntry } from "./register-entry";
+export { registerLoop } from "./register-loop";
+export { requestScreening, type ScreeningRequest } from "./request-screening";
+export { readScreeningSubject } from "./screen-recording";
+export {
+  EXPLANATIONS,
+  type Explanation,
+  OUTCOMES,
+  type Outcome,
+  RELATIONS,
+  type Relation,
+  STANDING_LIMITS,
+} from "./states";

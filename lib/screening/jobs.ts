@@ -1,0 +1,58 @@
+import { defineHandlers } from "@/lib/jobs";
+import { system } from "@/lib/kernel/actor";
+import { withLocalCopy } from "@/lib/uploads";
+import { announceReported } from "./announce-reported";
+import { screeningEngine } from "./engine/engine";
+import { storeFingerprints } from "./fingerprints";
+import { changeReference } from "./hold-reference";
+import { screenRecording } from "./screen-recording";
+import type { SubjectKind } from "./states";
+
+const actor = system("screening");
+
+async function fingerprintReference(subjectKind: SubjectKind, subjectId: string, fileKey: string) {
+  const result = await withLocalCopy(fileKey, "reference.wav", (path) =>
+    screeningEngine().fingerprintFile({ path, isLoop: subjectKind === "loop" }),
+  );
+  await storeFingerprints(actor, {
+    subjectKind,
+    subjectId,
+    engineVersion: result.engineVersion,
+    rows: result.rows,
+  });
+  await changeReference(
+    actor,
+    { change: "add", subjectKind, subjectId },
+    { operationId: `reference:${subjectKind}:${subjectId}:${fileKey}`.slice(0, 120) },
+  );
+  return result.rows.some((row) => row.comparable);
+}
+
+export const screeningHandlers = defineHandlers({
+  "screening.screen": {
+    heavy: true,
+    timeoutS: 3600,
+    handle: async ({ recordingId }, { progress }) => {
+      await screenRecording(recordingId, progress);
+    },
+  },
+  "screening.fingerprintLoop": {
+    heavy: true,
+    timeoutS: 600,
+    handle: async ({ loopId, fileKey }) => {
+      await fingerprintReference("loop", loopId, fileKey);
+    },
+  },
+  "screening.fingerprintReported": {
+    heavy: true,
+    timeoutS: 1800,
+    handle: async ({ reportedWorkId, fileKey }) => {
+      const comparable = await fingerprintReference("reported", reportedWorkId, fileKey);
+      await announceReported(
+        actor,
+        { reportedWorkId, comparable },
+        { operationId: `reported:${reportedWorkId}:${fileKey}`.slice(0, 120) },
+      );
+    },
+  },
+});
