@@ -28,7 +28,8 @@ export interface Migrated {
   appendOnly: number;
 }
 
-export class RemadeMigration extends Error {}
+/** A database that this code cannot bring up to date by itself; the message says what to do. */
+export class NotMigratable extends Error {}
 
 function connect(url: string): Promise<Connection> {
   return mysql.createConnection({ uri: url, supportBigNumbers: true, timezone: "Z" });
@@ -45,12 +46,22 @@ async function readApplied(connection: Connection): Promise<Set<string>> {
 function refuseRemade(applied: ReadonlySet<string>, known: ReadonlySet<string>): void {
   for (const hash of applied) {
     if (!known.has(hash)) {
-      throw new RemadeMigration(
+      throw new NotMigratable(
         "This database was made from an earlier initial migration, which has since been made anew. " +
           "Remove .data/mariadb (its demo data go with it) and start again.",
       );
     }
   }
+}
+
+/** Statements that define tables are not undone, so a first migration that was cut off cannot be repeated over its own remains. */
+function refuseUnfinished(applied: ReadonlySet<string>, tables: readonly string[]): void {
+  const made = tables.filter((table) => !READ_ONLY_TABLES.includes(table));
+  if (applied.size > 0 || made.length === 0) return;
+  throw new NotMigratable(
+    `The first migration of this database was cut off: it left ${made.length} tables and no record. ` +
+      "Nothing can have been stored in them yet. Remove .data/mariadb and start again.",
+  );
 }
 
 async function readTables(connection: Connection): Promise<string[]> {
@@ -132,6 +143,7 @@ export async function migrateDatabase({ ownerUrl, appUrl }: MigrateOptions): Pro
     const known = new Set(readMigrationFiles({ migrationsFolder }).map(({ hash }) => hash));
     const before = await readApplied(owner);
     refuseRemade(before, known);
+    refuseUnfinished(before, await readTables(owner));
     await migrate(drizzle(owner), { migrationsFolder });
     const after = await readApplied(owner);
     const tables = await readTables(owner);
@@ -157,11 +169,13 @@ async function main(): Promise<void> {
   );
 }
 
+// A migration that is asked to stop finishes first: it takes seconds, and half of it cannot be undone.
 if (process.argv[1] === fileURLToPath(import.meta.url)) {
+  for (const signal of ["SIGINT", "SIGTERM", "SIGHUP"]) process.on(signal, () => {});
   try {
     await main();
   } catch (error) {
-    console.error(error instanceof RemadeMigration ? error.message : error);
+    console.error(error instanceof NotMigratable ? error.message : error);
     process.exitCode = 1;
   }
 }

@@ -1,7 +1,7 @@
 import { mkdtempSync, rmSync } from "node:fs";
 import { join } from "node:path";
 import { runBrowserSuite } from "./start/browser-suite.mjs";
-import { refuseNewChildren, runToEnd, stopAllChildren } from "./start/children.mjs";
+import { runToEnd, stopAllChildren, stopTasks } from "./start/children.mjs";
 import { addCounts, closingLine, countReport, countVitest, NOTHING } from "./start/counts.mjs";
 import { formatEnv, writePrivateFile } from "./start/env-file.mjs";
 import { childEnvironment, demoEnvironment } from "./start/environment.mjs";
@@ -126,7 +126,7 @@ for (const signal of ["SIGINT", "SIGTERM", "SIGHUP"]) {
   process.on(signal, async () => {
     if (isStopping) return;
     isStopping = true;
-    refuseNewChildren();
+    await stopTasks();
     say("\nStopping …");
     await cleanUp();
     process.exit(130);

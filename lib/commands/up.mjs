@@ -1,9 +1,9 @@
 import { existsSync, readFileSync } from "node:fs";
 import { join } from "node:path";
-import { refuseNewChildren, stopAllChildren } from "./start/children.mjs";
+import { stopAllChildren, stopTasks } from "./start/children.mjs";
 import { formatEnv, readEnvFile, writePrivateFile } from "./start/env-file.mjs";
 import { demoEnvironment, USUAL_PORTS } from "./start/environment.mjs";
-import { startMariadb } from "./start/mariadb.mjs";
+import { endLeftoverMariadb, startMariadb } from "./start/mariadb.mjs";
 import { installDebianPackages, installNpmPackages } from "./start/packages.mjs";
 import { dataDir, makeDataDir } from "./start/paths.mjs";
 import { pickPorts } from "./start/ports.mjs";
@@ -26,6 +26,7 @@ import { endLeftovers, Supervisor } from "./start/supervise.mjs";
 const DEBIAN_PACKAGES = ["mariadb-server", "ffmpeg"];
 const DIST_DIR = ".next";
 const PROGRESS_EVERY_MS = 2_000;
+const DATABASE_RESTARTS_MAX = 5;
 
 const isDev = process.argv.includes("--dev");
 const logPath = (name) => join(dataDir, "logs", `${name}.log`);
@@ -37,12 +38,20 @@ let isStopping = false;
 async function stop(exitCode) {
   if (isStopping) return;
   isStopping = true;
-  refuseNewChildren();
-  say("\n  Stopping what was started …");
+  const hasStarted = cleanups.length > 1;
+  if (hasStarted) say("\n  Stopping what was started …");
+  await stopTasks();
   for (const cleanup of cleanups.splice(0).reverse()) await cleanup();
   await stopAllChildren();
-  say("  Stopped. The data are kept in .data; `npm run up` goes on from here.");
+  if (hasStarted) say("  Stopped. The data are kept in .data; `npm run up` goes on from here.");
   process.exit(exitCode);
+}
+
+/** An interrupted stage fails too; only a failure that nobody asked for is told. */
+async function giveUp(error) {
+  if (isStopping) return;
+  say(error instanceof Stop ? `\n  ${error.message}` : `\n${error.stack}`);
+  await stop(1);
 }
 
 function readPorts(path) {
@@ -61,22 +70,37 @@ function claimCheckout() {
   cleanups.push(async () => lock.release());
 }
 
-async function startDatabase() {
+/** A server that dies under us (a crash, the system short of memory) is started again where it was. */
+async function startDatabase({ wantedPort, secrets }) {
+  const start = (port) =>
+    startMariadb({
+      dir: makeDataDir("mariadb"),
+      wantedPort: port,
+      passwords: { ownerPassword: secrets.ownerPassword, appPassword: secrets.appPassword },
+    });
+  let database = await start(wantedPort);
+  const { port } = database;
+  const watch = async () => {
+    for (let restarts = 0; ; restarts += 1) {
+      await database.child.exited;
+      if (isStopping) return;
+      if (restarts === DATABASE_RESTARTS_MAX)
+        throw new Stop(`MariaDB ended again; its log is ${database.log}`);
+      say("  MariaDB ended by itself; starting it again.");
+      database = await start(port);
+      if (database.port !== port) throw new Stop(`Port ${port} of MariaDB was taken while it was down.`);
+    }
+  };
+  cleanups.push(() => database.stop());
+  void watch().catch(giveUp);
+  return port;
+}
+
+async function prepareEnvironment() {
   const secrets = keepSecrets(join(dataDir, "secrets.json"));
   const portsPath = join(dataDir, "ports.json");
   const ports = await pickPorts(USUAL_PORTS, readPorts(portsPath));
-  const database = await startMariadb({
-    dir: makeDataDir("mariadb"),
-    wantedPort: ports.database,
-    passwords: { ownerPassword: secrets.ownerPassword, appPassword: secrets.appPassword },
-  });
-  cleanups.push(() => database.stop());
-  void database.child.exited.then(() => {
-    if (isStopping) return;
-    say(`\n  MariaDB ended by itself; its log is ${database.log}`);
-    void stop(1);
-  });
-  ports.database = database.port;
+  ports.database = await startDatabase({ wantedPort: ports.database, secrets });
   writePrivateFile(portsPath, `${JSON.stringify(ports)}\n`);
   const values = demoEnvironment({ ports, secrets, mediaDir: makeDataDir("media") });
   writePrivateFile(join(dataDir, "env"), formatEnv(values));
@@ -127,14 +151,15 @@ async function up() {
   say(`\n  Sedgewren, starting from ${process.cwd()}\n`);
   claimCheckout();
   const recordPath = join(dataDir, "running.json");
-  const left = await endLeftovers(recordPath);
+  const databaseDir = join(dataDir, "mariadb");
+  const left = [...(await endLeftovers(recordPath)), ...(await endLeftoverMariadb(databaseDir))];
   if (left.length > 0) say(`  Ended what an earlier start left running: ${left.join(", ")}`);
   await stage("Debian packages", (report) => installDebianPackages(DEBIAN_PACKAGES, report));
   await stage("npm packages", installNpmPackages);
 
   let started;
   await stage("MariaDB", async () => {
-    started = await startDatabase();
+    started = await prepareEnvironment();
     return `on 127.0.0.1:${started.ports.database}`;
   });
   const { ports, values } = started;
@@ -176,8 +201,5 @@ setInterval(() => {}, 60_000);
 try {
   await up();
 } catch (error) {
-  if (!isStopping) {
-    say(error instanceof Stop ? `\n  ${error.message}` : `\n${error.stack}`);
-    await stop(1);
-  }
+  await giveUp(error);
 }

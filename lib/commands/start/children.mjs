@@ -9,15 +9,11 @@ const sleep = (ms) => new Promise((resolve) => setTimeout(resolve, ms));
 
 // Every process group started here and not yet known to be gone; what is left at the end is ended.
 const started = new Set();
+const tasks = new Set();
 let isClosed = false;
 
 function remember(child) {
   if (child.pid !== undefined) started.add(child.pid);
-}
-
-/** From here on nothing new is started: an interrupted start must not go on behind its own clean-up. */
-export function refuseNewChildren() {
-  isClosed = true;
 }
 
 function assertOpen() {
@@ -91,9 +87,18 @@ export function killChild(child) {
   if (child.pid !== undefined) signalGroup(child.pid, "SIGKILL");
 }
 
+/**
+ * Refuses anything new and ends what runs to its own end (an installation, a build, a migration): the
+ * first thing when a start is interrupted, while what those still need is there.
+ */
+export async function stopTasks() {
+  isClosed = true;
+  await Promise.all([...tasks].map(stopGroup));
+}
+
 /** Ends every group started here that still lives. */
 export async function stopAllChildren() {
-  refuseNewChildren();
+  isClosed = true;
   await Promise.all([...started].filter(groupIsAlive).map((pid) => stopGroup(pid)));
 }
 
@@ -113,6 +118,7 @@ export function runToEnd({ command, args, env, cwd, onLine = () => {} }) {
   return new Promise((resolve, reject) => {
     const child = spawn(command, args, { cwd, env, detached: true, stdio: ["ignore", "pipe", "pipe"] });
     remember(child);
+    tasks.add(child.pid);
     for (const stream of [child.stdout, child.stderr]) {
       let rest = "";
       stream.setEncoding("utf8");
@@ -125,7 +131,13 @@ export function runToEnd({ command, args, env, cwd, onLine = () => {} }) {
         if (rest !== "") onLine(rest);
       });
     }
-    child.once("error", reject);
-    child.once("close", (code, signal) => resolve({ code: code ?? 1, signal }));
+    child.once("error", (error) => {
+      tasks.delete(child.pid);
+      reject(error);
+    });
+    child.once("close", (code, signal) => {
+      tasks.delete(child.pid);
+      resolve({ code: code ?? 1, signal });
+    });
   });
 }

@@ -219,6 +219,19 @@ export function findRunning(dir) {
   };
 }
 
+/** Ends the server that a dead start left in `dir`; one whose starter lives is refused. Returns what it ended. */
+export async function endLeftoverMariadb(dir) {
+  const running = findRunning(dir);
+  if (running === null) return [];
+  if (running.isStarterAlive && running.starter.pid !== process.pid) {
+    throw new Stop(
+      `Process ${running.starter.pid} is using the database in ${dir}. Let it finish, or end it, first.`,
+    );
+  }
+  await stopGroup(running.pid);
+  return ["MariaDB"];
+}
+
 /**
  * Starts a MariaDB of our own on loopback, with everything it writes under `dir`. Takes the next free
  * port when `wantedPort` is taken. A server that an earlier, dead start left in `dir` is ended first;
@@ -233,15 +246,7 @@ export async function startMariadb({
   isForTests = false,
   bufferPool = isForTests ? "128M" : "256M",
 }) {
-  const running = findRunning(dir);
-  if (running !== null) {
-    if (running.isStarterAlive) {
-      throw new Stop(
-        `Process ${running.starter.pid} is using the database in ${dir}. Let it finish, or end it, first.`,
-      );
-    }
-    await stopGroup(running.pid);
-  }
+  await endLeftoverMariadb(dir);
   const account = prepareFolders(dir);
   const socket = socketPath(dir);
   const log = join(dir, "mariadbd.log");
