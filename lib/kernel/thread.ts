@@ -72,8 +72,8 @@ export class ThreadHost {
 
   private start(): Worker {
     this.generation++;
-    const worker = new Worker(this.script, {
-      execArgv: ["--import", "tsx"],
+    const worker = new Worker(new URL("./thread-start.mjs", import.meta.url), {
+      workerData: { script: this.script.href },
       resourceLimits: { maxOldGenerationSizeMb: this.memoryMb },
     });
     worker.on("message", (reply: ThreadReply) => this.receive(reply));
