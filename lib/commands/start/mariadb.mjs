@@ -9,6 +9,7 @@ import {
   readFileSync,
   rmSync,
   statSync,
+  symlinkSync,
   writeFileSync,
 } from "node:fs";
 import { connect } from "node:net";
@@ -156,26 +157,34 @@ async function createSystemTables({ dir, account }) {
   rmSync(join(dir, "data"), { recursive: true, force: true });
   mkdirSync(join(dir, "data"), { mode: 0o700 });
   if (account !== null) handOver(join(dir, "data"), account);
-  // The server's own tables are made in a run of their own, without the accounts, which need them.
-  const config = join(dir, "install.cnf");
-  writeFileSync(config, `[mariadbd]\ndatadir=${dir}/data\ntmpdir=${dir}/tmp\n`);
+  // Debian's script breaks on a path with a space in it, so it gets one without.
+  const alias = join(tmpdir(), `sedgewren-${process.pid}-${Date.now()}`);
+  symlinkSync(dir, alias);
   const lines = [];
-  const { code } = await runToEnd({
-    command: findProgram("mariadb-install-db"),
-    args: [
-      `--defaults-file=${config}`,
-      ...(account === null ? [] : [`--user=${account.name}`]),
-      "--auth-root-authentication-method=socket",
-      "--skip-test-db",
-      "--skip-name-resolve",
-    ],
-    cwd: dir,
-    env: process.env,
-    onLine: (line) => lines.push(line),
-  });
-  rmSync(config, { force: true });
-  if (code !== 0) {
-    throw new Stop(`mariadb-install-db ended with ${code}:\n${lines.slice(-20).join("\n")}`);
+  try {
+    // No accounts yet: they need the tables that are made here.
+    writeFileSync(join(dir, "install.cnf"), `[mariadbd]\ndatadir=${alias}/data\ntmpdir=${alias}/tmp\n`);
+    const { code } = await runToEnd({
+      command: findProgram("mariadb-install-db"),
+      args: [
+        `--defaults-file=${alias}/install.cnf`,
+        ...(account === null ? [] : [`--user=${account.name}`]),
+        "--auth-root-authentication-method=socket",
+        "--skip-test-db",
+        "--skip-name-resolve",
+      ],
+      cwd: dir,
+      env: process.env,
+      onLine: (line) => lines.push(line),
+    });
+    if (code !== 0 || !existsSync(join(dir, "data", "mysql", "global_priv.frm"))) {
+      throw new Stop(
+        `mariadb-install-db ended with ${code} and made no tables:\n${lines.slice(-20).join("\n")}`,
+      );
+    }
+  } finally {
+    rmSync(alias, { force: true });
+    rmSync(join(dir, "install.cnf"), { force: true });
   }
   writeFileSync(installedMark(dir), "");
 }
