@@ -1,13 +1,13 @@
-import { and, asc, desc, eq, gt, isNull, or } from "drizzle-orm";
+import { and, asc, desc, eq } from "drizzle-orm";
 import { z } from "zod";
 import type { Reader } from "@/db/client";
 import { memberships, people } from "@/db/schema/accounts";
 import { type Actor, system } from "@/lib/kernel/actor";
-import { businessNow } from "@/lib/kernel/clock";
 import { Bug, never } from "@/lib/kernel/errors";
 import { open, query } from "@/lib/kernel/verb";
+import { isLive, roleOf } from "./live";
 import type { SessionClaim } from "./session-claim";
-import { ROLES, type Role, roleLabel, SECOND_FACTOR_ROLES } from "./states";
+import { type Role, roleLabel, SECOND_FACTOR_ROLES } from "./states";
 
 export interface RoleChoice {
   membershipId: string;
@@ -27,12 +27,6 @@ export interface ResolvedViewer {
 
 type Membership = typeof memberships.$inferSelect;
 type PersonFields = { personId: string; name: string; secondFactorAt: string | null };
-
-export function roleOf(text: string): Role {
-  const role = ROLES.find((one) => one === text);
-  if (!role) throw new Bug(`no role is called ${text}`);
-  return role;
-}
 
 function inLibrary(membership: Membership): string {
   if (!membership.libraryId) throw new Bug(`${membership.id} is ${membership.role} of no library`);
@@ -74,12 +68,7 @@ export function liveMemberships(reader: Reader, personId: string): Promise<Membe
   return reader
     .select()
     .from(memberships)
-    .where(
-      and(
-        eq(memberships.personId, personId),
-        or(isNull(memberships.endsAt), gt(memberships.endsAt, businessNow())),
-      ),
-    )
+    .where(and(eq(memberships.personId, personId), isLive()))
     .orderBy(desc(memberships.lastUsedAt), asc(memberships.createdAt), asc(memberships.id));
 }
 

@@ -42,6 +42,21 @@ export const ROLE_WORDS: Readonly<Record<Role, string>> = {
   admin: "admin",
 };
 
+/** As it reads after "as" and "you are now". */
+export function roleInWords(role: Role, mayApprove: boolean): string {
+  switch (role) {
+    case "staff":
+      return "a member of staff";
+    case "buyer":
+      return mayApprove ? "a buyer who may also approve and pay" : "a buyer who may propose";
+    case "composer":
+    case "moderator":
+      return `a ${role}`;
+    default:
+      return `an ${role}`;
+  }
+}
+
 export const MARKETPLACE = "the marketplace";
 
 const BEFORE_SCOPE: Readonly<Record<Role, string>> = {
