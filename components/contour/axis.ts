@@ -10,6 +10,12 @@ export function percent(seconds: number, scaleS: number): string {
   return `${Number(((100 * seconds) / scaleS).toFixed(3))}%`;
 }
 
+/** How a label at this share of the width is set, so that it does not leave the drawing. */
+export function edgeAnchor(share: number): "start" | "middle" | "end" {
+  if (share < 0.03) return "start";
+  return share > 0.97 ? "end" : "middle";
+}
+
 /** Blocks of a chart's border, and how many of them lie between two labels. */
 export function axisSteps(seconds: number): { blockS: number; labelEvery: number } {
   if (seconds <= 6) return { blockS: 0.5, labelEvery: 2 };

@@ -1,5 +1,5 @@
 import { fmt } from "@/components/ui/format";
-import { axisSteps, percent } from "./axis";
+import { axisSteps, edgeAnchor, percent } from "./axis";
 
 export type EndingKind = "button" | "ring-out" | "fade" | "loop";
 
@@ -63,7 +63,7 @@ export function ChartAxis({ seconds, scaleS, y, fromS = 0 }: ChartAxisProps) {
         <text
           className="fill-ink-soft"
           key={labelS}
-          textAnchor={labelS === 0 ? "start" : labelS / scaleS > 0.97 ? "end" : "middle"}
+          textAnchor={edgeAnchor(labelS / scaleS)}
           x={percent(labelS, scaleS)}
           y={y + 20}
         >

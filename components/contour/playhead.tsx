@@ -3,7 +3,7 @@
 import { useRef } from "react";
 import { usePlayerPosition } from "@/components/player/use-player";
 import { fmt } from "@/components/ui/format";
-import { axisInstant, type CutPiece, percent } from "./axis";
+import { axisInstant, type CutPiece, edgeAnchor, percent } from "./axis";
 
 interface PlayheadProps {
   scaleS: number;
@@ -19,7 +19,9 @@ export function Playhead({ scaleS, pieces, labelled }: PlayheadProps) {
   usePlayerPosition((positionS) => {
     const axisS = axisInstant(pieces, positionS);
     head.current?.setAttribute("x", percent(axisS, scaleS));
-    if (time.current) time.current.textContent = fmt.time(positionS);
+    if (!time.current) return;
+    time.current.textContent = fmt.time(positionS);
+    time.current.setAttribute("text-anchor", edgeAnchor(axisS / scaleS));
   });
   return (
     <svg aria-hidden className="pointer-events-none absolute inset-0 size-full overflow-visible">

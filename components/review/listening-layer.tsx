@@ -1,7 +1,7 @@
 "use client";
 
 import { useEffect, useRef } from "react";
-import { percent } from "@/components/contour/axis";
+import { edgeAnchor, percent } from "@/components/contour/axis";
 import type { ContourData } from "@/components/contour/contour-data";
 import { PASSAGE_PX } from "@/components/contour/passage-chart";
 import { type ChartPassage, referenceInstant } from "@/components/contour/passages";
@@ -48,7 +48,9 @@ export function ListeningLayer({ passages, scaleS, data, fromS, toS }: Listening
       }
       svg.dataset.paired = String(bS !== null);
       const label = svg.querySelector("[data-time]");
-      if (label) label.textContent = fmt.timeTenths(aS);
+      if (!label) return;
+      label.textContent = fmt.timeTenths(aS);
+      label.setAttribute("text-anchor", edgeAnchor(aS / scaleS));
     };
     const run = () => {
       place();

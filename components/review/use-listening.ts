@@ -82,6 +82,7 @@ export function useListening(source: ListeningSource): Listening {
   const sounding = useRef<Sounding | null>(null);
   const latest = useRef(state);
   const repeated = useRef<Repeated | null>(null);
+  const firstUrl = useRef(url);
   useEffect(() => {
     latest.current = state;
   });
@@ -89,6 +90,8 @@ export function useListening(source: ListeningSource): Listening {
   useEffect(() => {
     const element = new Audio();
     element.preload = "metadata";
+    // A source before anybody sees the element: wavesurfer takes a source away that appears while it starts.
+    element.src = firstUrl.current;
     setAudio(element);
     setState((now) => ({ ...now, level: rememberedLevel() }));
     const change = (part: Partial<ListeningState>) => setState((now) => ({ ...now, ...part }));
@@ -122,7 +125,7 @@ export function useListening(source: ListeningSource): Listening {
 
   const heardUrl = state.isUndone ? url : (asDeliveredUrl ?? url);
   useEffect(() => {
-    if (!audio) return;
+    if (!audio || audio.src === new URL(heardUrl, window.location.href).href) return;
     const atS = audio.currentTime;
     const wasPlaying = !audio.paused;
     audio.src = heardUrl;

@@ -2,7 +2,7 @@
 
 import { Menu as Base } from "@base-ui/react/menu";
 import Link from "next/link";
-import type { ReactElement, ReactNode } from "react";
+import { type ReactElement, type ReactNode, useState } from "react";
 import { Mark } from "./mark";
 
 export interface MenuEntry {
@@ -44,11 +44,14 @@ function EntryWords({ entry }: { entry: MenuEntry }) {
 }
 
 export function Menu({ trigger, groups, align = "end" }: MenuProps) {
+  // The list opens beside its button, inside the same landmark, not at the end of the page.
+  const [place, setPlace] = useState<HTMLSpanElement | null>(null);
   return (
     <Base.Root modal={false}>
       <Base.Trigger render={trigger} />
-      <Base.Portal>
-        <Base.Positioner align={align} className="z-50" sideOffset={6}>
+      <span className="contents" ref={setPlace} />
+      <Base.Portal container={place}>
+        <Base.Positioner align={align} className="z-50" positionMethod="fixed" sideOffset={6}>
           <Base.Popup className="max-h-[calc(100dvh-5rem)] w-max max-w-[min(22rem,calc(100vw-2rem))] min-w-48 overflow-y-auto rounded-plain border border-ink bg-page py-1.5 text-ink shadow-menu outline-none">
             {groups.map((group, index) => (
               <Base.Group key={group.key}>

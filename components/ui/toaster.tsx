@@ -55,7 +55,7 @@ export function Toaster() {
   return (
     <Toast.Provider limit={3} toastManager={manager}>
       <Toast.Portal>
-        <Toast.Viewport className="fixed right-4 bottom-4 z-60 flex w-[24rem] max-w-[calc(100vw-2rem)] flex-col gap-2">
+        <Toast.Viewport className="fixed bottom-4 left-4 z-60 flex w-[24rem] max-w-[calc(100vw-2rem)] flex-col gap-2">
           <Notices />
         </Toast.Viewport>
       </Toast.Portal>
