@@ -13,7 +13,7 @@ export const CONFIDENTIAL_FIELDS = [
   "production.title",
   "production.parts",
   "production.references",
-  "fee",
+  "fee.details",
   "acceptance.person",
 ] as const;
 export type ConfidentialField = (typeof CONFIDENTIAL_FIELDS)[number];
