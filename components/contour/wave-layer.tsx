@@ -99,7 +99,7 @@ export function WaveLayer(props: WaveLayerProps) {
   return (
     <div
       aria-hidden
-      className="absolute inset-y-0"
+      className="wave-layer absolute inset-y-0"
       ref={place}
       style={{ left: percent(fromS, scaleS), width: percent(toS - fromS, scaleS) }}
     />

@@ -99,7 +99,7 @@ function DockedTrack({ track, place }: { track: PlayerTrack; place: "table" | "f
         </svg>
       </StripSeek>
       <div className="flex items-center gap-4">
-        <Button className="min-h-8 px-3 py-0.5" onClick={toggle}>
+        <Button onClick={toggle} size="small">
           {state.isPlaying ? "Stop" : "Play"}
         </Button>
         <LevelControl id={`level-${place}`} />

@@ -36,7 +36,7 @@ export function Header({ items, person, switchRole, signInHref = "/sign-in" }: H
         {person ? (
           <PersonMenu person={person} switchRole={switchRole} />
         ) : (
-          <ButtonLink className="min-h-[34px] border px-3 py-1 font-normal" href={signInHref}>
+          <ButtonLink href={signInHref} size="small">
             Sign in
           </ButtonLink>
         )}

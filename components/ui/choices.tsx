@@ -56,10 +56,12 @@ export function Fieldset({ legend, hint, error, children, size = "body", classNa
 type ChoicesProps = Omit<FieldsetProps, "children"> &
   Omit<ComponentPropsWithRef<"input">, "className" | "type" | "value" | "size" | "children"> & {
     options: readonly Choice[];
+    /** Chosen at first, in a form without react-hook-form. */
+    chosen?: string | undefined;
   };
 
 /** One of several, each a sentence that says what it does. Spread `register()` into it. */
-export function Choices({ legend, hint, error, size, className, options, ...input }: ChoicesProps) {
+export function Choices({ legend, hint, error, size, className, options, chosen, ...input }: ChoicesProps) {
   const id = useId();
   return (
     <Fieldset {...{ legend, hint, error, className, size: size ?? "body" }}>
@@ -77,6 +79,7 @@ export function Choices({ legend, hint, error, size, className, options, ...inpu
               >
                 <input
                   {...input}
+                  {...(chosen === undefined ? {} : { defaultChecked: chosen === option.value })}
                   aria-describedby={option.below ? `${optionId}-below` : undefined}
                   className="peer col-start-1 row-start-1 mt-[3px] size-[15px] cursor-pointer appearance-none rounded-round border-[1.6px] border-ink bg-page disabled:border-dashed disabled:border-ink-soft"
                   disabled={option.disabled ?? input.disabled}
@@ -91,7 +94,7 @@ export function Choices({ legend, hint, error, size, className, options, ...inpu
                 >
                   <circle className="fill-ink" cx="7.5" cy="7.5" r="3.6" />
                 </svg>
-                <span className="font-strong">{option.sentence}</span>
+                <span className="col-start-2 row-start-1 font-strong">{option.sentence}</span>
                 {option.below && (
                   <span
                     className="col-start-2 text-small font-normal text-ink-soft peer-checked:text-ink"

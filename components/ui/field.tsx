@@ -157,7 +157,7 @@ export function CheckField({ children, hint, error, className, id, ...input }: C
           {...input}
           aria-describedby={describedBy(fieldId, hint, error)}
           aria-invalid={error ? true : undefined}
-          className="peer mt-[1px] size-[18px] cursor-pointer appearance-none rounded-plain border-[1.5px] border-ink bg-page checked:bg-ink aria-invalid:border-magenta"
+          className="peer col-start-1 row-start-1 mt-[1px] size-[18px] cursor-pointer appearance-none rounded-plain border-[1.5px] border-ink bg-page checked:bg-ink aria-invalid:border-magenta"
           id={fieldId}
           type="checkbox"
         />
@@ -168,7 +168,7 @@ export function CheckField({ children, hint, error, className, id, ...input }: C
         >
           <path className="stroke-page" d="M4.5 9.4 7.6 12.5 13.5 5.8" fill="none" strokeWidth="2" />
         </svg>
-        <span className="max-w-measure">{children}</span>
+        <span className="col-start-2 row-start-1 max-w-measure">{children}</span>
       </label>
       {hint && (
         <p className="mt-0.5 ml-7 max-w-measure text-small text-ink-soft" id={`${fieldId}-hint`}>
