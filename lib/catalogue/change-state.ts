@@ -60,6 +60,12 @@ export async function setFamilyState(
   await writeEvent(tx, { familyId, fromState: family.state, toState: state, ...change });
 }
 
+/** Another recording becomes the head: the one before it was returned and replaced. */
+export async function setHead(tx: Tx, familyId: string, recordingId: string): Promise<void> {
+  await lockFamily(tx, familyId);
+  await tx.update(families).set({ headRecordingId: recordingId }).where(eq(families.id, familyId));
+}
+
 /** Lists a family's clear recordings; the head must be among them. Versions that clear later join by the same call. */
 export async function listClearRecordings(tx: Tx, familyId: string, change: Change): Promise<string[]> {
   const family = await lockFamily(tx, familyId);

@@ -5,6 +5,7 @@ export {
   openHolds,
   placeHold,
   setFamilyState,
+  setHead,
   setRecordingState,
 } from "./change-state";
 export { createLibrary } from "./create-library";
@@ -22,6 +23,7 @@ export {
   splitsNow,
 } from "./for-rooms";
 export {
+  acceptShare,
   type FamilyRegistration,
   insertRecording,
   type NewRecording,

@@ -1,4 +1,4 @@
-import { eq } from "drizzle-orm";
+import { and, eq, isNull } from "drizzle-orm";
 import type { Tx } from "@/db/client";
 import {
   catalogueEvents,
@@ -188,4 +188,27 @@ export async function writeSplit(
       split.shares.map((share, position) => ({ ...share, id: newId("sha"), splitVersionId: id, position })),
     );
   return id;
+}
+
+/** Marks a writer's share of the newest split as accepted by that writer. */
+export async function acceptShare(
+  tx: Tx,
+  args: { familyId: string; personId: string; now: Date },
+): Promise<void> {
+  const versions = await tx
+    .select({ id: splitVersions.id, version: splitVersions.version })
+    .from(splitVersions)
+    .where(eq(splitVersions.familyId, args.familyId));
+  const newest = versions.sort((a, b) => b.version - a.version)[0];
+  if (!newest) return;
+  await tx
+    .update(splitShares)
+    .set({ acceptedAt: args.now })
+    .where(
+      and(
+        eq(splitShares.splitVersionId, newest.id),
+        eq(splitShares.personId, args.personId),
+        isNull(splitShares.acceptedAt),
+      ),
+    );
 }

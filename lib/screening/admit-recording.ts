@@ -281,16 +281,14 @@ async function writeHits(
       lowDistinctiveness: hit.lowDistinctiveness,
       createdAt: args.now,
     });
-    await tx
-      .insert(passages)
-      .values(
-        hit.passages.map((passage, index) => ({
-          ...passage,
-          id: newId("pas"),
-          hitId: id,
-          number: index + 1,
-        })),
-      );
+    await tx.insert(passages).values(
+      hit.passages.map((passage, index) => ({
+        ...passage,
+        id: newId("pas"),
+        hitId: id,
+        number: index + 1,
+      })),
+    );
   }
 }
 

@@ -26,14 +26,12 @@ export const registerLoop = command({
   run: async ({ tx, input, actor, now }) => {
     const id = newId("lop");
     try {
-      await tx
-        .insert(sharedLoops)
-        .values({
-          id,
-          ...input,
-          registeredBy: actor.kind === "system" ? "system" : actor.personId,
-          createdAt: now,
-        });
+      await tx.insert(sharedLoops).values({
+        id,
+        ...input,
+        registeredBy: actor.kind === "system" ? "system" : actor.personId,
+        createdAt: now,
+      });
     } catch (error) {
       if (isDuplicateKey(error)) throw new Conflict(`${input.code} is registered already.`);
       throw error;

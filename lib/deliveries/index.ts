@@ -1,0 +1,27 @@
+export { afterScreening, deliveryOfFamily } from "./after-screening";
+export { answerSplit } from "./answer-split";
+export { applyFinding, type FindingEffect } from "./apply-finding";
+export { admitUpload, fileArrived, removeVersion, saveDraft, setVersion, startDelivery } from "./draft";
+export { acceptEditorial, returnEditorial } from "./editorial";
+export { guessRole } from "./guess-role";
+export {
+  type DeliverySummary,
+  type DeliveryView,
+  getDelivery,
+  listDeliveries,
+  listSplitRequests,
+  type VersionView,
+} from "./reads";
+export { readVersionToMeasure, recordMeasurement, recordUnreadable } from "./record-measurement";
+export { Declaration, DeliveryDraft, DeliveryForm, type DeliveryFormInput, SampleDeclared } from "./schemas";
+export { signDelivery } from "./sign-delivery";
+export { standingOf } from "./standing";
+export {
+  CUTDOWN_ROLES,
+  DECLARATION_TEXT_VERSION,
+  EDITORIAL_CODES,
+  type EditorialCode,
+  STANDINGS,
+  type Standing,
+} from "./states";
+export { tryListing } from "./try-listing";

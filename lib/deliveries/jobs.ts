@@ -1,0 +1,27 @@
+import { defineHandlers } from "@/lib/jobs";
+import { system } from "@/lib/kernel/actor";
+import { afterScreening } from "./after-screening";
+import { measureVersion } from "./measuring/measure-version";
+import { tryListing } from "./try-listing";
+
+const actor = system("deliveries");
+
+export const deliveriesHandlers = defineHandlers({
+  "delivery.measure": {
+    heavy: true,
+    timeoutS: 3700,
+    handle: ({ versionId }, { progress, isLast }) => measureVersion(versionId, progress, isLast),
+  },
+  "delivery.afterScreening": {
+    timeoutS: 60,
+    handle: async ({ recordingId, runId }) => {
+      await afterScreening(actor, { recordingId }, { operationId: `screened:${runId}` });
+    },
+  },
+  "delivery.tryListing": {
+    timeoutS: 60,
+    handle: async ({ deliveryId }) => {
+      await tryListing(actor, { deliveryId });
+    },
+  },
+});

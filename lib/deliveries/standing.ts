@@ -1,0 +1,75 @@
+import type { DeliveryRow } from "./own-delivery";
+import { STANDINGS, type Standing } from "./states";
+
+export type { Standing };
+
+const standingOfVersion: Record<string, Standing> = {
+  refused: "refused",
+  held: "held for a person",
+  returned: "needs you",
+  unreadable: "needs you",
+  arrived: "working",
+  measuring: "working",
+  screening: "working",
+  measured: "clear",
+  clear: "clear",
+  listed: "clear",
+};
+
+/** The worst of a delivery's versions, and one sentence that says the state of affairs. */
+export function standingOf(
+  delivery: Pick<DeliveryRow, "state" | "writersAcceptedAt" | "editorialAcceptedAt">,
+  versions: readonly { state: string; versionRole: string }[],
+): { standing: Standing | null; words: string } {
+  if (delivery.state === "draft") return { standing: null, words: draftWords(versions) };
+  if (delivery.state === "refused")
+    return { standing: "refused", words: "It cannot be listed. The reasons are below." };
+  if (delivery.state === "returned")
+    return {
+      standing: "needs you",
+      words: "The library sent it back. What to change is below; everything else is kept.",
+    };
+  const standings = versions.map((version) => standingOfVersion[version.state] ?? "working");
+  const worst = STANDINGS.find((standing) => standings.includes(standing)) ?? "clear";
+  if (worst !== "clear") return { standing: worst, words: sentence(worst, versions) };
+  if (delivery.state === "listed") return { standing: "clear", words: "It is listed." };
+  const waiting = [
+    delivery.writersAcceptedAt ? null : "its co-writers",
+    delivery.editorialAcceptedAt ? null : "the library to listen",
+  ].filter((part) => part !== null);
+  if (waiting.length > 0)
+    return {
+      standing: "waiting for others",
+      words: `Screened and clear. It waits for ${waiting.join(" and ")}.`,
+    };
+  return { standing: "clear", words: "Screened and accepted; it is being listed." };
+}
+
+function draftWords(versions: readonly { state: string }[]): string {
+  if (versions.length === 0) return "A draft with no file yet.";
+  const measured = versions.filter((version) => version.state === "measured").length;
+  const back = versions.filter(
+    (version) => version.state === "returned" || version.state === "unreadable",
+  ).length;
+  const files = `${measured} of ${versions.length} ${versions.length === 1 ? "file passes" : "files pass"} the checks so far.`;
+  return back === 0 ? files : `${files} ${back === 1 ? "One needs" : `${back} need`} a new file from you.`;
+}
+
+function sentence(worst: Standing, versions: readonly { state: string; versionRole: string }[]): string {
+  const count = versions.filter((version) => standingOfVersion[version.state] === worst).length;
+  const some = count === 1 ? "One version" : `${count} versions`;
+  switch (worst) {
+    case "refused":
+      return `${some} cannot be listed. The reasons are below.`;
+    case "rights hold":
+      return "A rights question is open. Nothing is decided yet.";
+    case "needs you":
+      return `${some} ${count === 1 ? "needs" : "need"} a new file from you. Everything else is kept.`;
+    case "held for a person":
+      return `${some} ${count === 1 ? "waits" : "wait"} for a person to listen. This often has an ordinary reason; nothing is decided yet.`;
+    case "working":
+      return `${some} ${count === 1 ? "is" : "are"} being screened.`;
+    default:
+      return "Screened and clear.";
+  }
+}
