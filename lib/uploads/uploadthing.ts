@@ -1,6 +1,7 @@
 import { UTApi, UTFile } from "uploadthing/server";
 import type { Environment } from "@/lib/kernel/env";
 import { env } from "@/lib/kernel/env";
+import { fetchStreaming } from "./streamed-form";
 
 export type UploadsConfig = Pick<
   Environment,
@@ -30,6 +31,7 @@ export function logLevelOf(config: UploadsConfig): LogLevel {
 export function openUploads(config: UploadsConfig): UploadsClient {
   const api = new UTApi({
     token: config.UPLOADTHING_TOKEN,
+    fetch: fetchStreaming,
     logLevel: logLevelOf(config),
     logFormat: "json",
     ufsAppIdLocation: config.UPLOADTHING_UFS_APP_ID_LOCATION,

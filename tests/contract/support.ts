@@ -80,6 +80,7 @@ export class Receiver {
 
 export interface ChildStandIn {
   url: string;
+  pid: number;
   /** SIGKILL: nothing gets a chance to tidy up. */
   kill(): Promise<void>;
 }
@@ -132,6 +133,7 @@ export async function spawnStandIn(
   });
   return {
     url,
+    pid: child.pid ?? 0,
     kill: () =>
       new Promise((resolve) => {
         child.once("exit", () => resolve());

@@ -434,8 +434,8 @@ test("only the site's own pages may upload from a browser", async () => {
   expect((await ask("https://elsewhere.example")).headers.get("access-control-allow-origin")).toBeNull();
 });
 
-test("a stream of many megabytes is stored without being held in memory", async () => {
-  const sizeBytes = 64_000_000;
+test("a body that comes in many pieces and without a length is stored whole", async () => {
+  const sizeBytes = 16_000_000;
   const { url, key } = await presign({ name: "large.wav", size: sizeBytes, type: "audio/wav" });
   const chunk = Buffer.alloc(1_000_000, 7);
   const head = multipart(Buffer.alloc(0)).body.toString().split("\r\n\r\n")[0];
