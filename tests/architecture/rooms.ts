@@ -4,6 +4,7 @@ export const ROOM_EDGES: Record<string, readonly string[]> = {
   audio: [],
   fingerprint: [],
   jobs: ["kernel"],
+  health: ["kernel", "jobs"],
   mail: ["kernel", "jobs"],
   uploads: ["kernel", "jobs"],
   payments: ["kernel", "jobs"],

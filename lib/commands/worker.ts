@@ -1,0 +1,34 @@
+import { closeDb } from "@/db/client";
+import { catalogueHandlers } from "@/lib/catalogue/jobs";
+import { closeMeasuring } from "@/lib/deliveries/measuring/measure-version";
+import { deliveriesHandlers } from "@/lib/deliveries/jobs";
+import { type Handlers, runWorker } from "@/lib/jobs";
+import { log } from "@/lib/kernel/log";
+import { ledgerHandlers } from "@/lib/ledger/jobs";
+import { licensingHandlers } from "@/lib/licensing/jobs";
+import { mailHandlers } from "@/lib/mail/jobs";
+import { reportsHandlers } from "@/lib/reports/jobs";
+import { reviewHandlers } from "@/lib/review/jobs";
+import { closeScreeningEngine } from "@/lib/screening/engine/engine";
+import { screeningHandlers } from "@/lib/screening/jobs";
+import { enqueueSlots } from "./slots";
+
+/** Every job by the room that handles it. */
+export const handlers: Handlers = {
+  ...mailHandlers,
+  ...screeningHandlers,
+  ...deliveriesHandlers,
+  ...catalogueHandlers,
+  ...reviewHandlers,
+  ...licensingHandlers,
+  ...ledgerHandlers,
+  ...reportsHandlers,
+};
+
+const stop = new AbortController();
+for (const signal of ["SIGTERM", "SIGINT"] as const) process.on(signal, () => stop.abort());
+
+log.info("the worker is ready");
+await runWorker({ handlers, signal: stop.signal, onTick: enqueueSlots });
+await Promise.allSettled([closeScreeningEngine(), closeMeasuring()]);
+await closeDb();

@@ -1,0 +1,1 @@
+export { readHealth } from "./read-health";
