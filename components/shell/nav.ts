@@ -15,19 +15,46 @@ export function navFor(kind: ActorKind, isMarketplace: boolean): NavItem[] {
     case "composer":
       return [DELIVERIES, MONEY, FIND];
     case "owner":
-      return [{ href: "/sales", words: "Sales" }, { href: "/payouts", words: "Payouts" }, DELIVERIES, { href: "/rate-card", words: "Rate card" }, { href: "/roster", words: "Roster" }, { href: "/log", words: "Log" }, FIND];
+      return [
+        { href: "/sales", words: "Sales" },
+        { href: "/payouts", words: "Payouts" },
+        DELIVERIES,
+        { href: "/rate-card", words: "Rate card" },
+        { href: "/roster", words: "Roster" },
+        { href: "/log", words: "Log" },
+        FIND,
+      ];
     case "staff":
       return [DELIVERIES, { href: "/roster", words: "Roster" }, FIND];
     case "moderator":
       return isMarketplace
-        ? [{ href: "/cases", words: "Review" }, { href: "/reported-works", words: "Reported works" }, { href: "/registers", words: "Registers" }]
-        : [{ href: "/cases", words: "Review" }, { href: "/registers", words: "Registers" }];
+        ? [
+            { href: "/cases", words: "Review" },
+            { href: "/reported-works", words: "Reported works" },
+            { href: "/registers", words: "Registers" },
+          ]
+        : [
+            { href: "/cases", words: "Review" },
+            { href: "/registers", words: "Registers" },
+          ];
     case "accountant":
-      return isMarketplace ? [{ href: "/payouts", words: "Payouts" }, { href: "/trial-balance", words: "Trial balance" }] : [{ href: "/sales", words: "Sales" }, { href: "/payouts", words: "Payouts" }, { href: "/trial-balance", words: "Trial balance" }];
+      return isMarketplace
+        ? [
+            { href: "/payouts", words: "Payouts" },
+            { href: "/trial-balance", words: "Trial balance" },
+          ]
+        : [
+            { href: "/sales", words: "Sales" },
+            { href: "/payouts", words: "Payouts" },
+            { href: "/trial-balance", words: "Trial balance" },
+          ];
     case "auditor":
       return [{ href: "/trial-balance", words: "Trial balance" }];
     case "admin":
-      return [{ href: "/people", words: "People" }, { href: "/log", words: "Log" }];
+      return [
+        { href: "/people", words: "People" },
+        { href: "/log", words: "Log" },
+      ];
     case "buyer":
       return [FIND, PRODUCTIONS, LICENCES, CHECK, REPORT];
     case "anonymous":

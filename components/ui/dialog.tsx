@@ -25,7 +25,7 @@ export function Dialog(props: DialogProps) {
     <Base.Root {...control} onOpenChange={(next) => onOpenChange?.(next)}>
       {trigger && <Base.Trigger render={trigger} />}
       <Base.Portal>
-        <Base.Backdrop className="fixed inset-0 z-40 min-h-dvh bg-ink opacity-30" />
+        <Base.Backdrop className="fixed inset-0 z-40 min-h-dvh bg-shade" />
         <Base.Popup className="fixed top-1/2 left-1/2 z-50 flex max-h-[calc(100dvh-2rem)] w-[34rem] max-w-[calc(100vw-2rem)] -translate-x-1/2 -translate-y-1/2 flex-col overflow-y-auto rounded-plain border border-ink bg-page p-5 text-ink sm:p-6">
           <Base.Title className="text-head leading-tight font-strong">{title}</Base.Title>
           {description && <Base.Description className="mt-1 max-w-measure">{description}</Base.Description>}

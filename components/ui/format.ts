@@ -156,11 +156,14 @@ export const fmt = {
   hertz: (value: number): string =>
     value >= 1000 ? `${Number((value / 1000).toFixed(3))}${NBSP}kHz` : `${value}${NBSP}Hz`,
   bits: (value: number): string => `${value}${NBSP}bit`,
-  number: (value: number, digits = 0): string =>
-    `${value < 0 ? MINUS : ""}${Math.abs(value).toLocaleString("en-GB", {
+  /** 1240.5 → "1,240.50" */
+  number: (value: number, digits = 0): string => {
+    const text = Math.abs(value).toLocaleString("en-GB", {
       minimumFractionDigits: digits,
       maximumFractionDigits: digits,
-    })}`,
+    });
+    return value < 0 && /[1-9]/.test(text) ? `${MINUS}${text}` : text;
+  },
   bytes,
   key,
   date,

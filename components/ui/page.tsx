@@ -25,9 +25,9 @@ export function Page({ children, aside, asideLabel }: PageProps) {
       {aside !== undefined && (
         <aside
           aria-label={asideLabel}
-          className="buff border-t border-ink bg-buff-1 lg:border-t-0 lg:border-l"
+          className="buff min-w-0 border-t border-ink bg-buff-1 wrap-anywhere lg:border-t-0 lg:border-l"
         >
-          <div className="lg:sticky lg:top-0 lg:max-h-dvh lg:overflow-y-auto">
+          <div className="lg:sticky lg:top-0 lg:max-h-dvh lg:overflow-x-hidden lg:overflow-y-auto">
             <DockPlace />
             <div className="px-4 pt-5 pb-8 sm:px-6 lg:px-7 lg:pt-7">{aside}</div>
           </div>

@@ -1,5 +1,6 @@
 import { genUploader } from "uploadthing/client";
 import type { UploadRouter, UploadSlug } from "@/lib/uploads";
+import { forgetUpload, rememberingFetch } from "./upload-memory";
 
 export interface UploadProgress {
   sentBytes: number;
@@ -67,9 +68,16 @@ function sentence(error: unknown): Error {
   return new Error(said, { cause: error });
 }
 
-const { createUpload } = genUploader<UploadRouter>({ url: "/api/uploadthing", package: "sedgewren" });
+const { createUpload } = genUploader<UploadRouter>({
+  url: "/api/uploadthing",
+  package: "sedgewren",
+  fetch: rememberingFetch,
+});
 
-/** Starts one upload that can be paused and resumed; the bytes the store holds are never sent again. */
+/**
+ * Starts one upload that can be paused and resumed, also by picking the same file again after a reload; the bytes that
+ * the store holds are never sent again.
+ */
 export async function startUpload({ slug, subjectId, file, onProgress }: StartUpload): Promise<UploadTask> {
   const pace = new Pace();
   let isPaused = false;
@@ -103,7 +111,10 @@ export async function startUpload({ slug, subjectId, file, onProgress }: StartUp
       upload.resumeUpload(file);
     },
     done: upload.done(file).then(
-      (result) => ({ key: result.key, answer: result.serverData }),
+      (result) => {
+        forgetUpload(slug, subjectId, file);
+        return { key: result.key, answer: result.serverData };
+      },
       (error: unknown) => {
         throw sentence(error);
       },
