@@ -156,6 +156,25 @@ describe("the offline verifier", () => {
     expect(answer(halfCharacter).result).toMatchObject({ verdict: "altered", failing: ["production.title"] });
   });
 
+  it("takes a key's validity and a missing key as the library does", () => {
+    const text = JSON.stringify(file);
+    const lists = [
+      KEYS.keys.slice(0, 1),
+      KEYS.keys.slice(1),
+      KEYS.keys.map((key) => ({ ...key, validUntil: "2026-05-01T00:00:00.000Z" })),
+      KEYS.keys.map((key) => ({ ...key, validFrom: "2026-03-01T00:00:00.000Z" })),
+      [...KEYS.keys, KEYS.keys[0]!],
+    ];
+    const verdicts = lists.map((keys) => {
+      writeFileSync(join(folder, "keys.json"), JSON.stringify({ ...KEYS, keys }));
+      const { result } = answer(text);
+      expect(result).toEqual(verifyRecord(text, { ...KEYS, keys }));
+      return result.verdict;
+    });
+    writeFileSync(join(folder, "keys.json"), JSON.stringify(KEYS));
+    expect(verdicts).toEqual(["genuine", "unknown", "altered", "altered", "altered"]);
+  });
+
   it("wrong use is told, with exit code 64", () => {
     expect(run("{}", "--on", "20.3.2026")).toMatchObject({
       status: 64,

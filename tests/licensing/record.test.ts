@@ -208,6 +208,16 @@ describe("verifying", () => {
     expect(verifyRecord(text(file), early)).toMatchObject({ verdict: "altered", failing: ["key"] });
   });
 
+  it("a history signed after its key had ended does not verify", () => {
+    const ended = KEYS.keys.map((key) =>
+      key.keyId === OTHER_KEY.keyId ? { ...key, validUntil: "2026-05-01T00:00:00.000Z" } : key,
+    );
+    expect(verifyRecord(text(file), { ...KEYS, keys: ended })).toMatchObject({
+      failing: ["status"],
+      asOf: null,
+    });
+  });
+
   it("a file signed with a key that the list does not hold is unknown; its history's key missing is said", () => {
     expect(verifyRecord(text(file), { ...KEYS, keys: KEYS.keys.slice(1) })).toMatchObject({
       verdict: "unknown",
