@@ -36,7 +36,8 @@ function whoFor(looker: Looker, row: AuditRow, names: ReadonlyMap<string, { name
   const isMarketplace = row.actorScope === null && ["moderator", "accountant"].includes(row.actorKind);
   const name = row.actorPersonId ? names.get(row.actorPersonId)?.name : undefined;
   if (isWithin && name) return name;
-  return isMarketplace ? `a ${row.actorKind} of the marketplace` : `a ${row.actorKind}`;
+  const role = `${/^[aeiou]/.test(row.actorKind) ? "an" : "a"} ${row.actorKind}`;
+  return isMarketplace ? `${role} of the marketplace` : role;
 }
 
 export const auditList = query({

@@ -35,7 +35,8 @@ const LOOKS_LIKE: Readonly<Record<string, string>> = {
 const RUN_MIN = 4;
 const DISTINCT_MIN = 5;
 /** Fewer characters than these beside common words, names and runs are no password. */
-const OWN_CHARACTERS_MIN = 6;
+const OWN_CHARACTERS_ALONE = 6;
+const OWN_CHARACTERS_WITH_SECOND_FACTOR = 4;
 
 interface Letter {
   raw: string;
@@ -125,7 +126,8 @@ export function passwordProblem(password: string, context: PasswordContext): str
   if (part && [...part].length < PASSWORD_LENGTH_WITH_SECOND_FACTOR) {
     return `This password only repeats “${part}”. Choose words that only you would put together.`;
   }
-  if (own < OWN_CHARACTERS_MIN && found.length > 0) {
+  const ownMinimum = context.hasSecondFactor ? OWN_CHARACTERS_WITH_SECOND_FACTOR : OWN_CHARACTERS_ALONE;
+  if (own < ownMinimum && found.length > 0) {
     const named = [...new Set(found)].slice(0, 4).map((word) => `“${word}”`);
     return `This password is made of what is tried first (${named.join(", ")}). Choose words that only you would put together.`;
   }

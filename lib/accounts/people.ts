@@ -28,18 +28,16 @@ export const registerPerson = command({
     const now = systemNow();
     const personId = newId("per");
     try {
-      await tx
-        .insert(people)
-        .values({
-          id: personId,
-          email,
-          name,
-          timeZone,
-          demo,
-          passwordHash,
-          emailVerifiedAt: now,
-          createdAt: now,
-        });
+      await tx.insert(people).values({
+        id: personId,
+        email,
+        name,
+        timeZone,
+        demo,
+        passwordHash,
+        emailVerifiedAt: now,
+        createdAt: now,
+      });
     } catch (error) {
       if (isDuplicateKey(error)) throw new Conflict(`${email} has an account already.`, { cause: error });
       throw error;

@@ -1,9 +1,11 @@
 import { and, asc, eq, ne } from "drizzle-orm";
 import { z } from "zod";
+import type { Tx } from "@/db/client";
 import { confirmedNames, memberships, people } from "@/db/schema/accounts";
 import { env } from "@/lib/kernel/env";
 import { Conflict, Invalid, NotFound } from "@/lib/kernel/errors";
 import { newId } from "@/lib/kernel/ids";
+import { isDuplicateKey } from "@/lib/kernel/transaction";
 import { command, query } from "@/lib/kernel/verb";
 import { isLive, roleOf } from "./live";
 import { type ConfirmedName, confirmedNamesOf, writerOnRoster } from "./reads";
@@ -12,6 +14,27 @@ import type { Role } from "./states";
 
 /** Numbers of the demonstration begin so; they belong to nobody and are never sent to a society. */
 const DEMO_IPI = /^999/;
+
+async function refuseTakenIpi(
+  tx: Tx,
+  wanted: { libraryId: string; personId: string; ipi: string | null },
+): Promise<void> {
+  if (!wanted.ipi) return;
+  const [other] = await tx
+    .select({ name: confirmedNames.creditName })
+    .from(confirmedNames)
+    .where(
+      and(
+        eq(confirmedNames.libraryId, wanted.libraryId),
+        eq(confirmedNames.ipi, wanted.ipi),
+        ne(confirmedNames.personId, wanted.personId),
+      ),
+    );
+  if (!other) return;
+  throw new Conflict(
+    `The IPI ${wanted.ipi} is confirmed for ${other.name} already. One of the two is wrong; nothing was changed.`,
+  );
+}
 
 export const confirmName = command({
   name: "accounts.confirmName",
@@ -33,7 +56,7 @@ export const confirmName = command({
       )
       .limit(1);
     if (!writer) throw new NotFound();
-    // Serialises the roster of one library on the writer's own row.
+    // One writer is confirmed by one request at a time.
     await tx.select({ id: people.id }).from(people).where(eq(people.id, writer.id)).for("update");
     return { libraryId };
   },
@@ -44,26 +67,20 @@ export const confirmName = command({
         ipi: "This IPI belongs to the demonstration.",
       });
     }
-    if (ipi) {
-      const [other] = await tx
-        .select({ name: confirmedNames.creditName })
-        .from(confirmedNames)
-        .where(
-          and(
-            eq(confirmedNames.libraryId, libraryId),
-            eq(confirmedNames.ipi, ipi),
-            ne(confirmedNames.personId, personId),
-          ),
-        );
-      if (other)
-        throw new Conflict(`The IPI ${ipi} is confirmed for ${other.name} already. One of the two is wrong.`);
-    }
+    await refuseTakenIpi(tx, { libraryId, personId, ipi });
     const confirmedBy = "personId" in actor ? actor.personId : "system";
     const values = { legalName, creditName, ipi, society, confirmedBy, confirmedAt: now };
-    await tx
-      .insert(confirmedNames)
-      .values({ id: newId("cfn"), libraryId, personId, ...values })
-      .onDuplicateKeyUpdate({ set: values });
+    // Not an upsert: it would write over the other writer's row where the IPI is the key that clashes.
+    const ofWriter = and(eq(confirmedNames.libraryId, libraryId), eq(confirmedNames.personId, personId));
+    const [held] = await tx.select({ id: confirmedNames.id }).from(confirmedNames).where(ofWriter);
+    try {
+      if (held) await tx.update(confirmedNames).set(values).where(eq(confirmedNames.id, held.id));
+      else await tx.insert(confirmedNames).values({ id: newId("cfn"), libraryId, personId, ...values });
+    } catch (error) {
+      if (!isDuplicateKey(error)) throw error;
+      await refuseTakenIpi(tx, { libraryId, personId, ipi });
+      throw error;
+    }
     return null;
   },
   audit: ({ input, subject }) => ({
