@@ -4,9 +4,9 @@ export type ListeningSide = "a" | "b";
 
 export const SWITCH_LEAD_S = 0.02;
 export const SWITCH_RAMP_S = 0.03;
-export const LIMIT_DB = -20;
+export const LIMIT_DB = -12;
 const RATIO = 20;
-const CEILING = 0.5;
+export const CEILING = 0.5;
 
 export interface ListeningGraph {
   /** Connect this to the destination. */

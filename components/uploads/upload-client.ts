@@ -68,6 +68,11 @@ function sentence(error: unknown): Error {
   return new Error(said, { cause: error });
 }
 
+/** The store said no, so its signed address is of no more use; a broken line is another matter. */
+function isRefusal(error: unknown): boolean {
+  return error instanceof Error && /^XHR failed 4\d\d/.test(error.message);
+}
+
 const { createUpload } = genUploader<UploadRouter>({
   url: "/api/uploadthing",
   package: "sedgewren",
@@ -116,6 +121,7 @@ export async function startUpload({ slug, subjectId, file, onProgress }: StartUp
         return { key: result.key, answer: result.serverData };
       },
       (error: unknown) => {
+        if (isRefusal(error)) forgetUpload(slug, subjectId, file);
         throw sentence(error);
       },
     ),
