@@ -3,7 +3,7 @@
 import { useEffect, useRef } from "react";
 import { edgeAnchor, percent } from "@/components/contour/axis";
 import type { ContourData } from "@/components/contour/contour-data";
-import { PASSAGE_PX } from "@/components/contour/passage-chart";
+import { PASSAGE_PX } from "@/components/contour/passage-measures";
 import { type ChartPassage, referenceInstant } from "@/components/contour/passages";
 import { WaveLayer } from "@/components/contour/wave-layer";
 import { fmt } from "@/components/ui/format";
@@ -19,9 +19,7 @@ interface ListeningLayerProps {
   toS: number;
 }
 
-const { topPx, stripPx, gapPx } = PASSAGE_PX;
-const B_TOP = topPx + stripPx + gapPx;
-const BOTTOM = B_TOP + stripPx;
+const { topPx, stripPx, bTopPx: B_TOP, bottomPx: BOTTOM, heightPx } = PASSAGE_PX;
 const STROKES = [
   { className: "stroke-page", strokeWidth: 4 },
   { className: "stroke-magenta", strokeWidth: 2 },
@@ -82,7 +80,7 @@ export function ListeningLayer({ passages, scaleS, data, fromS, toS }: Listening
       <svg
         aria-hidden
         className="group pointer-events-none absolute inset-x-0 top-0 block w-full overflow-visible"
-        height={BOTTOM + 34}
+        height={heightPx}
         ref={drawing}
       >
         {STROKES.map((stroke) => (

@@ -77,13 +77,22 @@ interface DateOptions {
   weekday?: boolean;
 }
 
+/** A zone by itself, or with how to write the day. */
+type DateWay = string | DateOptions;
+
+function way(given: DateWay): Required<DateOptions> {
+  const { zone = "UTC", weekday = false } = typeof given === "string" ? { zone: given } : given;
+  return { zone, weekday };
+}
+
 function zoneName(zone: string): string {
   if (zone === "UTC") return "UTC";
   const place = zone.slice(zone.lastIndexOf("/") + 1).replaceAll("_", " ");
   return `${place} time`;
 }
 
-function date(value: Date | string | number, { zone = "UTC", weekday = false }: DateOptions = {}): string {
+function date(value: Date | string | number, given: DateWay = {}): string {
+  const { zone, weekday } = way(given);
   return new Intl.DateTimeFormat("en-GB", {
     timeZone: zone,
     day: "numeric",
@@ -103,7 +112,8 @@ function dayMonth(
   return date(value, { zone, weekday }).replace(/ \d{4}$/, "");
 }
 
-function timeOfDay(value: Date | string | number, { zone = "UTC" }: DateOptions = {}): string {
+function timeOfDay(value: Date | string | number, given: DateWay = {}): string {
+  const { zone } = way(given);
   const text = new Intl.DateTimeFormat("en-GB", {
     timeZone: zone,
     hour: "2-digit",
@@ -170,8 +180,8 @@ export const fmt = {
   dayMonth,
   timeOfDay,
   /** "18 May 2026, 09:14 UTC" */
-  dateTime: (value: Date | string | number, options: DateOptions = {}): string =>
-    `${date(value, options)}, ${timeOfDay(value, options)}`,
+  dateTime: (value: Date | string | number, given: DateWay = {}): string =>
+    `${date(value, given)}, ${timeOfDay(value, given)}`,
   count,
   /** Small counts as words: 3, "passage" → "three passages" */
   countWord: (value: number, one: string, many = `${one}s`): string => {
