@@ -1,12 +1,13 @@
 import Link from "next/link";
 import { ButtonLink } from "@/components/ui/button";
 import { MarkOfSedge } from "./mark-of-sedge";
-import { type NavItem, NavLinks, PersonMenu, PhoneMenu, type SignedIn } from "./nav-links";
+import { type NavItem, NavLinks, PersonMenu, PhoneMenu, type SignedIn, type SwitchRole } from "./nav-links";
 
 interface HeaderProps {
   items: readonly NavItem[];
   person?: SignedIn | undefined;
-  switchRole?: ((key: string) => Promise<void>) | undefined;
+  /** The server action that chooses a role. */
+  switchRole?: SwitchRole | undefined;
   signInHref?: string;
 }
 

@@ -60,10 +60,12 @@ export interface SignedIn {
   links: readonly { href: string; words: string }[];
 }
 
+/** The server action that chooses a role; it leads to that role's first page by itself. */
+export type SwitchRole = (input: { membershipId: string }) => Promise<unknown>;
+
 interface PersonMenuProps {
   person: SignedIn;
-  /** A server action that takes the role's key. */
-  switchRole?: ((key: string) => Promise<void>) | undefined;
+  switchRole?: SwitchRole | undefined;
 }
 
 function personGroups({ person, switchRole }: PersonMenuProps): MenuGroup[] {
@@ -78,7 +80,7 @@ function personGroups({ person, switchRole }: PersonMenuProps): MenuGroup[] {
               words: role.words,
               isCurrent: role.isCurrent,
               onPick: () => {
-                if (!role.isCurrent) void switchRole?.(role.key);
+                if (!role.isCurrent) void switchRole?.({ membershipId: role.key });
               },
             })),
           },
@@ -109,7 +111,7 @@ export function PersonMenu(props: PersonMenuProps) {
 interface PhoneMenuProps {
   items: readonly NavItem[];
   person?: SignedIn | undefined;
-  switchRole?: ((key: string) => Promise<void>) | undefined;
+  switchRole?: SwitchRole | undefined;
   signInHref: string;
 }
 

@@ -19,6 +19,7 @@ export interface OwnAccount {
   mayReplacePassword: boolean;
   secondFactorSince: Date | null;
   isSettingUp: boolean;
+  /** A person of the demonstration, whose codes the page fills in. */
   demo: boolean;
 }
 
@@ -38,7 +39,7 @@ export const getAccount = query({
     mayReplacePassword: cameByLink(subject),
     secondFactorSince: subject.totpConfirmedAt,
     isSettingUp: subject.totpPendingSecret !== null,
-    demo: subject.demo,
+    demo: subject.demo && env.SEDGEWREN_MODE === "demo",
   }),
 });
 

@@ -70,14 +70,15 @@ async function withCode(
   claim: SessionClaim,
   update: unknown,
 ): Promise<{ claim: SessionClaim; problem?: string }> {
-  const given = update as { secondFactorCode?: unknown; address?: unknown } | null;
+  const given = update as { secondFactorCode?: unknown } | null;
   if (typeof given?.secondFactorCode !== "string") return { claim };
   try {
     const { at } = await confirmSecondFactor({
       personId: claim.personId,
       sessionVersion: claim.sessionVersion,
       code: given.secondFactorCode.slice(0, 12),
-      address: "session",
+      // A session's update does not say where it comes from; codes take turns by account anyway.
+      address: claim.personId,
     });
     return { claim: { ...claim, secondFactorAt: at } };
   } catch (error) {

@@ -196,12 +196,16 @@ export const chooseRole = command({
     if (!membership) throw new NotFound();
     return membership;
   },
-  run: async ({ tx, input }) => {
+  run: async ({ tx, input, subject }) => {
     await tx
       .update(memberships)
       .set({ lastUsedAt: systemNow() })
       .where(eq(memberships.id, input.membershipId));
-    return { membershipId: input.membershipId };
+    return {
+      membershipId: input.membershipId,
+      kind: roleOf(subject.role),
+      isMarketplace: subject.libraryId === null && subject.companyId === null,
+    };
   },
   audit: ({ input, subject }) => ({ subject: input.membershipId, libraryId: subject.libraryId }),
 });

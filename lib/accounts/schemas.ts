@@ -71,7 +71,8 @@ export const SignInByPassword = z.object({
 
 export const RequestSignInLink = z.object({
   email: EmailAddress,
-  address: z.string().max(100),
+  /** Where the request came from: said by the site, never by the form. */
+  address: z.string().max(100).default("unknown"),
 });
 
 export const ConfirmSecondFactor = z.object({
