@@ -61,11 +61,29 @@ export function parseBext(body: Uint8Array): Bext | null {
   };
 }
 
-/** ASCII only, as the chunk demands: accents are dropped to their letter, anything else becomes "?". */
+/** Letters that do not decompose into a plain letter and an accent. */
+const SPELT: Record<string, string> = {
+  ß: "ss",
+  æ: "ae",
+  Æ: "AE",
+  œ: "oe",
+  Œ: "OE",
+  ø: "o",
+  Ø: "O",
+  ł: "l",
+  Ł: "L",
+  đ: "d",
+  Đ: "D",
+  þ: "th",
+  Þ: "Th",
+};
+
+/** ASCII only, as the chunk demands: accents are dropped to their letter, anything unknown becomes "?". */
 export function toAscii(text: string): string {
   return text
     .normalize("NFKD")
     .replace(/[\u0300-\u036f]/g, "")
+    .replace(/[ßæÆœŒøØłŁđĐþÞ]/g, (letter) => SPELT[letter] ?? "?")
     .replace(/[\u2018\u2019]/g, "'")
     .replace(/[\u2010-\u2015\u2212]/g, "-")
     .replace(/[^\x20-\x7e\r\n]/g, "?");

@@ -109,6 +109,7 @@ export async function runDecode(
   } catch (error) {
     if (error instanceof ListenerError) throw error.cause;
     if (error instanceof TooLong || error instanceof UnsupportedAudio || options.signal?.aborted) throw error;
+    if (isSystemFault(error)) throw error;
     complaint = error instanceof Error ? error.message : String(error);
   }
   return judge(facts, samples, given, brokenSamples, complaint);
@@ -116,6 +117,14 @@ export async function runDecode(
 
 /** Keeps a fault of the receiver apart from a fault of the file. */
 class ListenerError extends Error {}
+
+/** A failed read or a missing program says nothing about the file: it must not be reported as damage. */
+function isSystemFault(error: unknown): boolean {
+  for (let at: unknown = error, depth = 0; at instanceof Error && depth < 4; at = at.cause, depth++) {
+    if ("syscall" in at) return true;
+  }
+  return false;
+}
 
 /** A decoder may give one channel while both are silent (stereo MP3 with a quiet start); the header decides. */
 function widen(channels: Float32Array[], width: number): Float32Array[] {
@@ -159,7 +168,7 @@ export function assertComplete(outcome: DecodeOutcome): void {
   throw new Damaged(outcome.readableS, outcome.declaredS, outcome.what);
 }
 
-async function* decodedBlocks(source: ByteSource, facts: ContainerFacts): AsyncGenerator<Decoded> {
+export async function* decodedBlocks(source: ByteSource, facts: ContainerFacts): AsyncGenerator<Decoded> {
   if (facts.pcm) yield* readPcm(source, facts.pcm);
   else if (facts.codec === "FLAC") yield* flacBlocks(source, facts);
   else yield* packageBlocks(source, facts);

@@ -21,6 +21,7 @@ export {
   type OnBlock,
 } from "./decode-source";
 export { decodeStream, decodeWhole, type FileDecodeOptions } from "./decode-stream";
+export { encodeFlac } from "./encode-flac";
 export {
   AudioError,
   type AudioErrorCode,
@@ -43,8 +44,11 @@ export {
 } from "./key";
 export { type Measured, type MeasureOptions, measureFile, type OnAnalysis } from "./measure-file";
 export { createMeter, type Measures, type Meter } from "./meter";
+export { encodePreview, type Preview, type PreviewOptions } from "./preview";
 export { probe } from "./probe";
 export { probeSource } from "./probe-source";
+export { type AlignedRender, type AlignedRequest, renderAligned } from "./render-aligned";
+export { type RenderedMaster, readBext, renderMaster } from "./render-master";
 export {
   ANALYSIS_RATE_HZ,
   createMonoResampler,
