@@ -19,10 +19,13 @@ const DEBIAN_PACKAGES = ["mariadb-server", "ffmpeg", "chromium", "sox", "rubberb
 
 const cleanups = [];
 let isStopping = false;
+let runDir = null;
 
 async function cleanUp() {
   for (const cleanup of cleanups.splice(0).reverse()) await cleanup();
   await stopAllChildren();
+  // Last, when nothing can write there any more.
+  if (runDir !== null) rmSync(runDir, { recursive: true, force: true, maxRetries: 5 });
 }
 
 async function startTestDatabase({ dir, ports, secrets }) {
@@ -107,8 +110,7 @@ async function test(chosenPaths) {
   const startMs = performance.now();
   await stage("Debian packages", (report) => installDebianPackages(DEBIAN_PACKAGES, report));
   await stage("npm packages", installNpmPackages);
-  const runDir = mkdtempSync(join(makeDataDir("test"), "run-"));
-  cleanups.push(async () => rmSync(runDir, { recursive: true, force: true }));
+  runDir = mkdtempSync(join(makeDataDir("test"), "run-"));
   const ports = await pickPorts(TEST_PORTS);
   const secrets = makeSecrets({}, TEST_MAKERS);
   const { values } = await stage("Test database", () =>

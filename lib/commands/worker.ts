@@ -1,7 +1,7 @@
 import { closeDb } from "@/db/client";
 import { catalogueHandlers } from "@/lib/catalogue/jobs";
-import { closeMeasuring } from "@/lib/deliveries/measuring/measure-version";
 import { deliveriesHandlers } from "@/lib/deliveries/jobs";
+import { closeMeasuring } from "@/lib/deliveries/measuring/measure-version";
 import { type Handlers, runWorker } from "@/lib/jobs";
 import { log } from "@/lib/kernel/log";
 import { ledgerHandlers } from "@/lib/ledger/jobs";

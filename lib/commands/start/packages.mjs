@@ -1,4 +1,4 @@
-import { existsSync, readdirSync, readFileSync } from "node:fs";
+import { existsSync, readFileSync } from "node:fs";
 import { join } from "node:path";
 import { runToEnd } from "./children.mjs";
 import { findProgram, projectDir } from "./paths.mjs";
@@ -84,28 +84,22 @@ export function npmPackagesAreInstalled(dir = projectDir) {
   );
 }
 
-function countPackages(folder) {
-  try {
-    return readdirSync(folder).reduce(
-      (sum, name) =>
-        sum + (name.startsWith("@") ? readdirSync(join(folder, name)).length : name.startsWith(".") ? 0 : 1),
-      0,
-    );
-  } catch (error) {
-    if (error.code === "ENOENT" || error.code === "ENOTDIR") return 0;
-    throw error;
-  }
+/** The paths that npm will fill on this machine; optional packages for other platforms stay away. */
+function expectedPaths(lock) {
+  const suits = (allowed, own) => allowed === undefined || allowed.includes(own);
+  return Object.entries(lock.packages)
+    .filter(
+      ([path, entry]) => path !== "" && suits(entry.os, process.platform) && suits(entry.cpu, process.arch),
+    )
+    .map(([path]) => join(projectDir, path, "package.json"));
 }
 
 export async function installNpmPackages(report) {
   if (npmPackagesAreInstalled()) return "as package-lock.json asks";
-  const lock = JSON.parse(readFileSync(join(projectDir, "package-lock.json"), "utf8"));
-  const total = Object.keys(lock.packages).filter((path) =>
-    /^node_modules\/(@[^/]+\/)?[^/]+$/.test(path),
-  ).length;
+  const expected = expectedPaths(JSON.parse(readFileSync(join(projectDir, "package-lock.json"), "utf8")));
   const lines = [];
   const timer = setInterval(() => {
-    report(`${Math.min(countPackages(join(projectDir, "node_modules")), total)} of ${total} packages`);
+    report(`${expected.filter((path) => existsSync(path)).length} of ${expected.length} packages`);
   }, 1_000);
   try {
     const { code } = await runToEnd({
@@ -119,5 +113,5 @@ export async function installNpmPackages(report) {
   } finally {
     clearInterval(timer);
   }
-  return `${total} packages installed`;
+  return `${expected.length} packages installed`;
 }
