@@ -47,6 +47,7 @@ export interface Checkout {
   state: "open" | "paid" | "unpaid" | "expired";
   total: Money;
   url: string | null;
+  /** May lag behind `state`: where it is null although the state is "paid", read again. */
   payment: Payment | null;
   /** The last refusal by the buyer's bank, in its words. */
   lastDecline: string | null;

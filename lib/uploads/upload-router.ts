@@ -3,6 +3,7 @@ import { UploadThingError } from "uploadthing/server";
 import { z } from "zod";
 import { env } from "@/lib/kernel/env";
 import { Expected } from "@/lib/kernel/errors";
+import { log } from "@/lib/kernel/log";
 import { UPLOAD_WINDOW_H, type UploadSlug, uploadLimits } from "./states";
 import { logLevelOf, type UploadsConfig } from "./uploadthing";
 
@@ -33,8 +34,9 @@ export interface UploadGate {
     fileIds?: readonly string[];
   }>;
   /**
-   * A file is stored. May be called twice for one file: key on `file.key`. It must do no more than write a row and
-   * enqueue, since a failure here is not repeated by the store. What it returns reaches the browser.
+   * A file is stored. May be called more than once for one file: key on `file.key`. It writes a row and enqueues, and
+   * no more, since the browser waits; where it throws, the store is asked to say so again. What it returns reaches the
+   * browser.
    */
   arrived(file: ArrivedFile, context: Record<string, string>): Promise<Record<string, string>>;
 }
@@ -56,6 +58,9 @@ function asUploadError(error: unknown): unknown {
         : "BAD_REQUEST";
   return new UploadThingError({ code, message: error.message });
 }
+
+/** The SDK answers 200 whatever a gate threw; the message of arrival that failed is kept here until it is answered. */
+const failedArrivals = new WeakMap<Request, unknown>();
 
 function makeRoute(slug: UploadSlug, gate: UploadGate) {
   const { maxFileSize, maxFileCount, accept } = uploadLimits[slug];
@@ -82,12 +87,21 @@ function makeRoute(slug: UploadSlug, gate: UploadGate) {
         throw asUploadError(error);
       }
     })
-    .onUploadComplete(({ file, metadata }) =>
-      gate.arrived(
-        { key: file.key, name: file.name, sizeBytes: file.size, type: file.type, customId: file.customId },
-        Context.parse(metadata.context),
-      ),
-    );
+    .onUploadComplete(async ({ req, file, metadata }) => {
+      try {
+        const arrived = {
+          key: file.key,
+          name: file.name,
+          sizeBytes: file.size,
+          type: file.type,
+          customId: file.customId,
+        };
+        return await gate.arrived(arrived, Context.parse(metadata.context));
+      } catch (error) {
+        failedArrivals.set(req, error);
+        throw error;
+      }
+    });
 }
 
 export function makeUploadRouter(gates: UploadGates) {
@@ -101,19 +115,31 @@ export function makeUploadRouter(gates: UploadGates) {
 /** For `import type` in the browser's half. */
 export type UploadRouter = ReturnType<typeof makeUploadRouter>;
 
-/** The GET and POST of the upload address. The SDK checks the store's signature on callbacks itself. */
+/**
+ * The GET and POST of the upload address. The SDK checks the store's signature on messages of arrival itself; one that
+ * the gate could not take is answered 503, so that the store sends it again.
+ */
 export function makeUploadHandlers(gates: UploadGates, config: UploadsConfig = env) {
-  return createRouteHandler({
+  const { GET, POST } = createRouteHandler({
     router: makeUploadRouter(gates),
     config: {
       token: config.UPLOADTHING_TOKEN,
       isDev: config.UPLOADTHING_IS_DEV,
       logLevel: logLevelOf(config),
       logFormat: "json",
-      // A callback is answered at once; what it does goes on in this long-lived process.
-      handleDaemonPromise: "void",
+      // Outside development the SDK waits for the gate before it answers, so a crash in between is not taken for done.
       ...(config.UPLOADTHING_CALLBACK_URL ? { callbackUrl: config.UPLOADTHING_CALLBACK_URL } : {}),
       ...(config.UPLOADTHING_INGEST_URL ? { ingestUrl: config.UPLOADTHING_INGEST_URL } : {}),
     },
   });
+  const post = async (request: Parameters<typeof POST>[0]): Promise<Response> => {
+    const answer = await POST(request);
+    if (!failedArrivals.has(request)) return answer;
+    log.error(
+      { err: failedArrivals.get(request) },
+      "a stored file could not be taken in; the store will say so again",
+    );
+    return Response.json({ message: "Not taken in; please send it again." }, { status: 503 });
+  };
+  return { GET, POST: post };
 }

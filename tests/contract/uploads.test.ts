@@ -28,6 +28,7 @@ import { API_KEY, control, TOKEN, temporaryDir } from "./support";
 const dir = temporaryDir();
 const arrivals: { file: ArrivedFile; context: Record<string, string> }[] = [];
 let waiting: (() => void)[] = [];
+let failures = 0;
 let site: Server;
 let siteUrl = "";
 let service: StandIn;
@@ -44,6 +45,7 @@ async function startSite(configOf: () => UploadsConfig): Promise<void> {
       };
     },
     arrived: async (file, context) => {
+      if (file.name === "fails-once.wav" && failures++ === 0) throw new Error("the database is away");
       arrivals.push({ file, context });
       for (const resolve of waiting.splice(0)) resolve();
       return { versionId: file.customId ?? "" };
@@ -415,6 +417,12 @@ test("the site may be told of a file twice, and late", async () => {
     await new Promise((resolve) => setTimeout(resolve, 20));
   expect((await sending).status).toBe(200);
   expect(arrivals.at(-1)?.file.key).toBe(key);
+});
+
+test("a file that the gate could not take in is announced again until it is taken", async () => {
+  const key = await upload(randomBytes(100), "fails-once.wav");
+  expect(failures).toBe(2);
+  expect(arrivals.map(({ file }) => file.key)).toEqual([key]);
 });
 
 test("only the site's own pages may upload from a browser", async () => {
