@@ -753,15 +753,13 @@ CREATE TABLE `reported_works` (
 );
 --> statement-breakpoint
 CREATE TABLE `aligned_listenings` (
-	`id` varchar(40) character set ascii collate ascii_bin NOT NULL,
+	`passage_id` varchar(40) character set ascii collate ascii_bin NOT NULL,
 	`hit_id` varchar(40) character set ascii collate ascii_bin NOT NULL,
 	`state` varchar(10) character set ascii collate ascii_bin NOT NULL,
 	`file_key` varchar(120) character set ascii collate ascii_bin,
-	`spans` json NOT NULL,
-	`method` varchar(60),
+	`render_facts` json,
 	`created_at` datetime(3) NOT NULL,
-	CONSTRAINT `aligned_listenings_id` PRIMARY KEY(`id`),
-	CONSTRAINT `aligned_listenings_hit` UNIQUE(`hit_id`)
+	CONSTRAINT `aligned_listenings_passage_id` PRIMARY KEY(`passage_id`)
 );
 --> statement-breakpoint
 CREATE TABLE `case_groups` (
@@ -941,6 +939,7 @@ CREATE TABLE `recording_fingerprints` (
 	`subject_id` varchar(40) character set ascii collate ascii_bin NOT NULL,
 	`channel` varchar(5) character set ascii collate ascii_bin NOT NULL,
 	`engine_version` int NOT NULL,
+	`file_key` varchar(120) character set ascii collate ascii_bin,
 	`packed` mediumblob NOT NULL,
 	`sha256` varchar(64) character set ascii collate ascii_bin NOT NULL,
 	`duration_s` double NOT NULL,
@@ -1061,6 +1060,7 @@ CREATE INDEX `notice_events_notice` ON `notice_events` (`notice_id`,`at`);--> st
 CREATE INDEX `notices_state` ON `notices` (`state`,`received_at`);--> statement-breakpoint
 CREATE INDEX `notices_email` ON `notices` (`email_hash`,`received_at`);--> statement-breakpoint
 CREATE INDEX `reported_works_level` ON `reported_works` (`level`);--> statement-breakpoint
+CREATE INDEX `aligned_listenings_hit` ON `aligned_listenings` (`hit_id`);--> statement-breakpoint
 CREATE INDEX `case_messages_case` ON `case_messages` (`case_id`,`at`);--> statement-breakpoint
 CREATE INDEX `cases_queue` ON `cases` (`library_id`,`state`,`due_at`);--> statement-breakpoint
 CREATE INDEX `cases_delivery` ON `cases` (`delivery_id`);--> statement-breakpoint

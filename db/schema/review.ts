@@ -117,16 +117,21 @@ export const conflictsDeclared = mysqlTable(
   (table) => [uniqueIndex("conflicts_declared_once").on(table.caseId, table.personId)],
 );
 
-/** The four-channel file of one hit, rendered by the worker. */
-export const alignedListenings = mysqlTable("aligned_listenings", {
-  id: id("id").primaryKey(),
-  hitId: id("hit_id").notNull().unique("aligned_listenings_hit"),
-  state: ascii(10)("state").notNull(),
-  fileKey: ascii(120)("file_key"),
-  spans: jsonOf<Record<string, unknown>[]>("spans").notNull(),
-  method: varchar("method", { length: 60 }),
-  createdAt: at("created_at").notNull(),
-});
+/** The four-channel file of one passage, rendered by the worker: delivery left and right, reference left and right. */
+export const alignedListenings = mysqlTable(
+  "aligned_listenings",
+  {
+    passageId: id("passage_id").primaryKey(),
+    hitId: id("hit_id").notNull(),
+    /** ready, or why it cannot be heard */
+    state: ascii(10)("state").notNull(),
+    fileKey: ascii(120)("file_key"),
+    /** As lib/audio's renderAligned returns it. */
+    render: jsonOf<Record<string, unknown> | null>("render_facts"),
+    createdAt: at("created_at").notNull(),
+  },
+  (table) => [index("aligned_listenings_hit").on(table.hitId)],
+);
 
 /** Who opened what of whom: papers and another library's sound. */
 export const disclosures = mysqlTable(

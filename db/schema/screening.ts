@@ -33,6 +33,8 @@ export const recordingFingerprints = mysqlTable(
     /** mid, left, right */
     channel: ascii(5)("channel").notNull(),
     engineVersion: int("engine_version").notNull(),
+    /** Where the sound is, for a reference that is no delivered recording. */
+    fileKey: ascii(120)("file_key"),
     packed: bytes("packed").notNull(),
     sha256: sha256("sha256").notNull(),
     durationS: double("duration_s").notNull(),

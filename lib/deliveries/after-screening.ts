@@ -1,7 +1,7 @@
-import { and, eq, isNull } from "drizzle-orm";
+import { and, asc, eq, isNull } from "drizzle-orm";
 import { z } from "zod";
-import type { Tx } from "@/db/client";
-import { deliveries, deliveryVersions } from "@/db/schema/deliveries";
+import type { Reader, Tx } from "@/db/client";
+import { declarations, deliveries, deliveryVersions } from "@/db/schema/deliveries";
 import { setRecordingState } from "@/lib/catalogue";
 import { enqueue } from "@/lib/jobs";
 import { NotFound } from "@/lib/kernel/errors";
@@ -90,8 +90,25 @@ async function anyHeld(
   return false;
 }
 
-/** Where a delivery of this recording stands, for rooms above. */
-export async function deliveryOfFamily(tx: Pick<Tx, "select">, familyId: string) {
-  const [row] = await tx.select().from(deliveries).where(eq(deliveries.familyId, familyId));
-  return row ?? null;
+/** A family's delivery, for rooms above: the newest, or the one named. */
+export async function deliveryOfFamily(reader: Reader, familyId: string, deliveryId?: string) {
+  const rows = await reader.select().from(deliveries).where(eq(deliveries.familyId, familyId));
+  const newest = rows.sort((a, b) => b.createdAt.getTime() - a.createdAt.getTime());
+  return (deliveryId ? newest.find((row) => row.id === deliveryId) : newest[0]) ?? null;
+}
+
+/** Signed declarations of a delivery, oldest first. */
+export async function declarationsOf(reader: Reader, deliveryId: string) {
+  return reader
+    .select({
+      version: declarations.version,
+      textVersion: declarations.textVersion,
+      answers: declarations.answers,
+      sha256: declarations.sha256,
+      signedName: declarations.signedName,
+      signedAt: declarations.signedAt,
+    })
+    .from(declarations)
+    .where(eq(declarations.deliveryId, deliveryId))
+    .orderBy(asc(declarations.version));
 }

@@ -1,4 +1,4 @@
-export { afterScreening, deliveryOfFamily } from "./after-screening";
+export { afterScreening, declarationsOf, deliveryOfFamily } from "./after-screening";
 export { answerSplit } from "./answer-split";
 export { applyFinding, type FindingEffect } from "./apply-finding";
 export { admitUpload, fileArrived, removeVersion, saveDraft, setVersion, startDelivery } from "./draft";

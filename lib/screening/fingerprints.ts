@@ -21,6 +21,7 @@ const StoreFingerprints = z.object({
   subjectKind: z.enum(SUBJECT_KINDS),
   subjectId: z.string(),
   engineVersion: z.int(),
+  fileKey: z.string().nullable().default(null),
   rows: z
     .array(
       z.object({
@@ -48,6 +49,7 @@ export const storeFingerprints = command({
         subjectKind: input.subjectKind,
         subjectId: input.subjectId,
         engineVersion: input.engineVersion,
+        fileKey: input.fileKey,
         ...row,
         packed,
         sha256: createHash("sha256").update(packed).digest("hex"),

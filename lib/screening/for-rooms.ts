@@ -114,3 +114,29 @@ export async function indexSize(reader: Reader): Promise<{ seq: number }> {
     .where(eq(indexHead.name, "index"));
   return { seq: head?.seq ?? 0 };
 }
+
+/** Where the sound of a reference that is not a delivered recording is kept: a loop's file, a reported work's recording. */
+export async function reportedFile(
+  reader: Reader,
+  subjectKind: string,
+  subjectId: string,
+): Promise<{ key: string; name: string } | null> {
+  if (subjectKind === "loop") {
+    const [loop] = await reader
+      .select({ fileKey: sharedLoops.fileKey })
+      .from(sharedLoops)
+      .where(eq(sharedLoops.id, subjectId));
+    return loop?.fileKey ? { key: loop.fileKey, name: "loop.wav" } : null;
+  }
+  const [row] = await reader
+    .select({ fileKey: recordingFingerprints.fileKey })
+    .from(recordingFingerprints)
+    .where(
+      and(
+        eq(recordingFingerprints.subjectKind, subjectKind),
+        eq(recordingFingerprints.subjectId, subjectId),
+        eq(recordingFingerprints.channel, "mid"),
+      ),
+    );
+  return row?.fileKey ? { key: row.fileKey, name: "reference.wav" } : null;
+}

@@ -13,6 +13,7 @@ export {
   listLoops,
   notComparableSpans,
   type PassageRow,
+  reportedFile,
 } from "./for-rooms";
 export { FoundHit, FoundPassage } from "./found";
 export { changeReference } from "./hold-reference";

@@ -18,6 +18,7 @@ async function fingerprintReference(subjectKind: SubjectKind, subjectId: string,
     subjectKind,
     subjectId,
     engineVersion: result.engineVersion,
+    fileKey,
     rows: result.rows,
   });
   await changeReference(

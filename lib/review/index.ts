@@ -1,0 +1,17 @@
+export { type DelivererCase, getCaseOfDelivery, hearOwnPassage } from "./for-deliverer";
+export { type CaseGroupView, type CaseView, getCase } from "./get-case";
+export { declareConflict, handOver, openPapers, takeCase } from "./hold-case";
+export { hearPassage, readListeningSubject, recordListening } from "./listening";
+export { openCase } from "./open-case";
+export { answerQuestion, askComposer } from "./question";
+export { listCases, type QueueRow } from "./queue";
+export { confirmFinding, RecordFinding, recordFinding } from "./record-finding";
+export {
+  type CaseState,
+  EXPLAINED_BY,
+  FINDING_OUTCOMES,
+  type FindingOutcome,
+  INNOCENT_EXPLANATIONS,
+  RIGHTS_CODES,
+  type RightsCode,
+} from "./states";
