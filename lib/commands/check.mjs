@@ -53,7 +53,12 @@ async function check() {
   await stage("npm packages", installNpmPackages);
   const failed = [];
   for (const [name, run] of CHECKS) {
-    const { isGood, output } = await stage(name, run);
+    let outcome;
+    await stage(name, async () => {
+      outcome = await run();
+      return outcome.isGood ? "well" : "not well";
+    });
+    const { isGood, output } = outcome;
     if (isGood) continue;
     failed.push(name);
     say(output);
