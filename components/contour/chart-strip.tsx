@@ -118,7 +118,7 @@ export function ChartStrip(props: ChartStripProps) {
     const isActive = version === active;
     const doing = isActive && state.isPlaying ? ", playing" : "";
     return (
-      <span className="relative flex w-fit flex-wrap items-baseline gap-x-2 max-lg:bg-page max-lg:pr-2 lg:absolute lg:top-1/2 lg:left-[calc(100%+22px)] lg:w-44 lg:-translate-y-1/2">
+      <span className="relative flex w-fit flex-wrap items-baseline gap-x-2 @max-wide:bg-page @max-wide:pr-2 @wide:absolute @wide:top-1/2 @wide:left-[calc(100%+22px)] @wide:w-44 @wide:-translate-y-1/2">
         <button
           aria-pressed={isActive}
           className={cx("min-h-6 text-left", isActive ? "font-label" : "link")}
@@ -138,12 +138,12 @@ export function ChartStrip(props: ChartStripProps) {
   };
 
   return (
-    <div className="pr-[18px] lg:pr-[12.5rem]">
+    <div className="pr-[18px] @wide:pr-[12.5rem]">
       <div className="relative">
         <SectionRules scaleS={scaleS} sections={sections} />
         <SectionLetters scaleS={scaleS} sections={sections} />
         {people && (
-          <p className="relative w-fit text-small text-ink-soft max-lg:mb-1 max-lg:bg-page max-lg:pr-2 lg:absolute lg:top-0 lg:left-[calc(100%+22px)] lg:w-44">
+          <p className="relative w-fit text-small text-ink-soft @max-wide:mb-1 @max-wide:bg-page @max-wide:pr-2 @wide:absolute @wide:top-0 @wide:left-[calc(100%+22px)] @wide:w-44">
             {people}
           </p>
         )}
@@ -190,7 +190,7 @@ export function ChartStrip(props: ChartStripProps) {
         <div className="relative">
           <Soundings scaleS={scaleS} sections={sections} />
           {sections.some((section) => typeof section.lufs === "number") && (
-            <p className="relative w-fit text-small text-ink-soft max-lg:bg-page max-lg:pr-2 lg:absolute lg:top-[3px] lg:left-[calc(100%+22px)] lg:w-44">
+            <p className="relative w-fit text-small text-ink-soft @max-wide:bg-page @max-wide:pr-2 @wide:absolute @wide:top-[3px] @wide:left-[calc(100%+22px)] @wide:w-44">
               soundings in LUFS, by section
             </p>
           )}

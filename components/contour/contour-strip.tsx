@@ -35,7 +35,7 @@ export function ContourStrip(props: ContourStripProps) {
   const words = [fmt.spokenTime(data.seconds), ...(ending ? [ENDING_WORDS[ending]] : [])].join(", ");
   const fullHeight = axis ? height + 28 : height;
   return (
-    <div className={cx("pr-[18px]", gutter && "lg:pr-[12.5rem]", props.className)}>
+    <div className={cx("pr-[18px]", gutter && "@wide:pr-[12.5rem]", props.className)}>
       <svg
         aria-label={`${label}: ${words}.${equivalent ? ` ${equivalent}` : ""}`}
         className="block w-full overflow-visible"

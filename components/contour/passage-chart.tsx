@@ -1,4 +1,5 @@
 import type { ReactNode } from "react";
+import { cx } from "@/components/ui/cx";
 import { fmt } from "@/components/ui/format";
 import { percent } from "./axis";
 import { ChartAxis, type EndingKind, EndingMark } from "./chart-marks";
@@ -49,7 +50,10 @@ function Side({ side, scaleS, y }: { side: PassageSide; scaleS: number; y: numbe
           />
           {(gap.toS - gap.fromS) / scaleS > 0.08 && (
             <text
-              className="fill-ink-soft max-sm:hidden"
+              className={cx(
+                "fill-ink-soft",
+                (gap.toS - gap.fromS) / scaleS > 0.15 ? "max-sm:hidden" : "hidden @wide:inline",
+              )}
               textAnchor="middle"
               x={percent((gap.fromS + gap.toS) / 2, scaleS)}
               y={middle - 9}

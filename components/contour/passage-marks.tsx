@@ -1,3 +1,4 @@
+import { cx } from "@/components/ui/cx";
 import { fmt } from "@/components/ui/format";
 import { percent } from "./axis";
 import { NARROW, NARROW_ON_PHONE, PASSAGE_PX } from "./passage-measures";
@@ -35,7 +36,7 @@ export function Joined({ passage, scaleS, isSelected }: MarkProps) {
       </svg>
       {share > 0.17 && (
         <text
-          className={isSelected ? "font-label max-sm:hidden" : "max-sm:hidden"}
+          className={cx(share > 0.2 ? "max-sm:hidden" : "hidden @wide:inline", isSelected && "font-label")}
           textAnchor="middle"
           x={percent(middleS, scaleS)}
           y={TOP + STRIP + GAP / 2 + 4.5}

@@ -29,7 +29,7 @@ export function PlayStrip(props: PlayStripProps) {
     className,
   } = props;
   return (
-    <div className={cx("pr-[18px]", gutter && "lg:pr-[12.5rem]", className)}>
+    <div className={cx("pr-[18px]", gutter && "@wide:pr-[12.5rem]", className)}>
       <StripSeek
         durationS={track.durationS}
         label={track.below ? `${track.title}, ${track.below}` : track.title}

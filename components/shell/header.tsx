@@ -30,10 +30,10 @@ export function Header({ items, person, switchRole, signInHref = "/sign-in" }: H
         <MarkOfSedge />
         Sedgewren
       </Link>
-      <nav aria-label="Areas" className="ml-5 hidden lg:block">
+      <nav aria-label="Areas" className="ml-5 hidden shrink-0 whitespace-nowrap xl:block">
         <NavLinks items={items} />
       </nav>
-      <div className="ml-auto hidden min-w-0 lg:block">
+      <div className="ml-auto hidden min-w-0 xl:block">
         {person ? (
           <PersonMenu person={person} switchRole={switchRole} />
         ) : (
@@ -42,7 +42,7 @@ export function Header({ items, person, switchRole, signInHref = "/sign-in" }: H
           </ButtonLink>
         )}
       </div>
-      <div className="ml-auto flex items-baseline gap-4 lg:hidden">
+      <div className="ml-auto flex items-baseline gap-4 xl:hidden">
         {person && <span className="text-small text-ink-soft">{person.roleShort}</span>}
         <PhoneMenu items={items} person={person} signInHref={signInHref} switchRole={switchRole} />
       </div>

@@ -20,7 +20,7 @@ export function Page({ children, aside, asideLabel }: PageProps) {
       )}
     >
       <main className="min-w-0 px-4 pt-5 pb-12 sm:px-6 lg:px-10 lg:pt-[26px]" id="main" tabIndex={-1}>
-        <div className="mx-auto max-w-main lg:mx-0">{children}</div>
+        <div className="@container mx-auto max-w-main lg:mx-0">{children}</div>
       </main>
       {aside !== undefined && (
         <aside
