@@ -13,8 +13,8 @@ export interface Thresholds {
 /** Chosen on wrong pairs of real music; the figures stand in the README. */
 export const DEFAULT_THRESHOLDS: Readonly<Thresholds> = Object.freeze({
   holdEvidence: 100,
-  holdEvidence2: 40,
-  holdShare: 0.2,
+  holdEvidence2: 50,
+  holdShare: 0.13,
   weakEvidence: 50,
   weakEvidence2: 8,
 });

@@ -1,13 +1,8 @@
-import {
-  evidenceNats,
-  matchPeaks,
-  PITCH_TOLERANCE_SEMITONES,
-  type Span,
-  TIME_TOLERANCE_FRAMES,
-} from "./alignment";
+import { type AffineMap, matchPeaks, type Span } from "./alignment";
 import type { Fingerprint } from "./fingerprint";
 import type { Prepared } from "./prepared";
-import { framesToS } from "./settings";
+import { evidenceNats } from "./score";
+import { FRAME_SAMPLES, framesToS, SAMPLE_RATE_HZ } from "./settings";
 import { type Alignment, PASSAGE_NATS_MIN } from "./verify";
 
 export type Channel = "mid" | "left" | "right";
@@ -49,13 +44,20 @@ export interface Hit {
   lowDistinctiveness: boolean;
 }
 
+/** The first peak of a passage stands this far inside it and the last this far before its end: a quarter of a frame. */
+const EDGE_S = FRAME_SAMPLES / 4 / SAMPLE_RATE_HZ;
 /** A share of chance this near to the share seen is no distinction. */
 const DISTINCT_SHARE = 0.5;
 const SAME_SPEED = 0.003;
 const SAME_PITCH_SEMITONES = 0.05;
 const WHOLE = 0.9;
+/** Passages whose offsets differ by more were cut and moved. */
+const EDIT_MIN_S = 0.5;
 /** Repeats of one stretch of the reference no longer than this are a loop. */
 const LOOP_MAX_S = 20;
+/** A further alignment of the same recording must stand by itself, or chance alignments would fill the gaps. */
+const FURTHER_NATS_MIN = 35;
+const FURTHER_NATS2_MIN = 12;
 /** Of a passage already explained by a surer one, this much must be new. */
 const NEW_SHARE = 0.5;
 const NEW_MIN_S = 1;
@@ -73,15 +75,23 @@ export function makeHit(
   const best = ranked[0];
   if (best === undefined) return null;
   const passages: Passage[] = [];
-  for (const alignment of ranked) addPassages(passages, query, reference, alignment);
+  for (const alignment of ranked) {
+    if (
+      alignment !== best &&
+      (alignment.evidence < FURTHER_NATS_MIN || alignment.evidence2 < FURTHER_NATS2_MIN)
+    )
+      continue;
+    addPassages(passages, query, reference, alignment);
+  }
   if (passages.length === 0) return null;
   passages.sort((x, y) => x.startS - y.startS);
+  widen(passages, queryFp.durationS, referenceFp.durationS);
   const coverageQuery = share(union(passages.map((p) => [p.startS, p.endS])), queryFp.contentS);
   const coverageReference = share(union(passages.map((p) => [p.refStartS, p.refEndS])), referenceFp.contentS);
   const rate = best.score.hits / best.score.trials;
   return {
     id,
-    relationHint: hint(passages, coverageQuery, coverageReference),
+    relationHint: hint(passages, best.map, coverageQuery, coverageReference),
     evidence: best.evidence,
     evidence2: best.evidence2,
     matchedShare: rate,
@@ -95,6 +105,22 @@ export function makeHit(
     passages: reversed ? passages.map((p) => turnRound(p, queryFp.durationS)).reverse() : passages,
     lowDistinctiveness: best.score.chanceHigh >= DISTINCT_SHARE * rate,
   };
+}
+
+/** Gives passages the edges that the analysis frame took from them, as far as neighbours and both recordings leave room. */
+function widen(passages: Passage[], durationS: number, referenceDurationS: number): void {
+  for (let i = 0; i < passages.length; i++) {
+    const passage = passages[i]!;
+    const before = i === 0 ? 0 : passages[i - 1]!.endS;
+    const after = i + 1 === passages.length ? durationS : passages[i + 1]!.startS;
+    const atStart = Math.min(EDGE_S, Math.max(0, passage.startS - before), passage.refStartS / passage.speed);
+    const room = Math.max(0, referenceDurationS - passage.refEndS) / passage.speed;
+    const atEnd = Math.min(EDGE_S, Math.max(0, (after - passage.endS) / 2), room);
+    passage.startS -= atStart;
+    passage.refStartS -= atStart * passage.speed;
+    passage.endS += atEnd;
+    passage.refEndS += atEnd * passage.speed;
+  }
 }
 
 function turnRound(passage: Passage, durationS: number): Passage {
@@ -131,7 +157,7 @@ function describePassage(
   while (to > from && framesToS(query.timeFrames[to - 1]!) > endS) to--;
   const matched = new Int32Array(to - from);
   const { map } = alignment;
-  matchPeaks(query, reference, map, from, to, TIME_TOLERANCE_FRAMES, PITCH_TOLERANCE_SEMITONES, matched);
+  matchPeaks(query, reference, map, from, to, alignment.score.tolerance, matched);
   let hits = 0;
   for (const index of matched) if (index >= 0) hits++;
   const atFrames = (s: number): number => map.a * query.timeFrames[s]! + map.b;
@@ -148,15 +174,25 @@ function describePassage(
   };
 }
 
-function hint(passages: Passage[], coverageQuery: number, coverageReference: number): RelationHint {
-  const longest = passages.reduce((best, p) => (p.endS - p.startS > best.endS - best.startS ? p : best));
-  const altered =
-    Math.abs(longest.speed - 1) > SAME_SPEED || Math.abs(longest.pitchSemitones) > SAME_PITCH_SEMITONES;
-  const whole = coverageQuery >= WHOLE && coverageReference >= WHOLE;
-  if (whole)
-    return altered || passages.some((p) => p.speed !== longest.speed) ? "altered copy" : "same recording";
+function hint(
+  passages: Passage[],
+  map: AffineMap,
+  coverageQuery: number,
+  coverageReference: number,
+): RelationHint {
+  const altered = Math.abs(map.a - 1) > SAME_SPEED || Math.abs(map.c) > SAME_PITCH_SEMITONES;
+  if (coverageQuery >= WHOLE && coverageReference >= WHOLE) {
+    const edited = passages.some(
+      (passage) => Math.abs(offsetS(passage) - offsetS(passages[0]!)) > EDIT_MIN_S,
+    );
+    return altered || edited ? "altered copy" : "same recording";
+  }
   if (repeats(passages)) return "shared material";
   return altered ? "altered copy" : "excerpt";
+}
+
+function offsetS(passage: Passage): number {
+  return passage.refStartS - passage.speed * passage.startS;
 }
 
 /** At least two passages take the same short stretch of the reference. */

@@ -1,10 +1,4 @@
-import {
-  type AffineMap,
-  matchPeaks,
-  PITCH_TOLERANCE_SEMITONES,
-  type Span,
-  TIME_TOLERANCE_FRAMES,
-} from "./alignment";
+import { type AffineMap, matchPeaks, type Span, type Tolerance } from "./alignment";
 import type { Prepared } from "./prepared";
 
 /** A passage ends where its running score has fallen this far: some 35 misses in a row of a clear copy. */
@@ -26,18 +20,10 @@ export function matchingSpans(
   rate: number,
   chance: number,
   leastNats: number,
+  tolerance: Tolerance,
 ): Span[] {
   const matched = new Int32Array(query.count);
-  matchPeaks(
-    query,
-    reference,
-    map,
-    0,
-    query.count,
-    TIME_TOLERANCE_FRAMES,
-    PITCH_TOLERANCE_SEMITONES,
-    matched,
-  );
+  matchPeaks(query, reference, map, 0, query.count, tolerance, matched);
   const hit = Math.log(rate / chance);
   const miss = Math.log((1 - rate) / (1 - chance));
   return maximalSpans(matched, hit, miss, leastNats);

@@ -8,6 +8,7 @@ import { prepare } from "./prepared";
 import { searchQuads } from "./quad-search";
 import { DENSE, FAST } from "./quads";
 import { BLOCK_FRAMES, type ReadCounts } from "./reading";
+import { addRepeats } from "./repeats";
 import { buildSegment, mergeSegments, type Segment, segmentBytes } from "./segment";
 import { type Alignment, explains, verifyCandidate } from "./verify";
 
@@ -265,6 +266,7 @@ function alignAll(
     const alignment = verifyCandidate(query, reference, candidate);
     if (alignment !== null) alignments.push(alignment);
   }
+  addRepeats(query, reference, alignments);
   return alignments;
 }
 

@@ -1,7 +1,8 @@
-import { type AffineMap, evidenceNats, inRange, refine, type Score, type Span, scoreMap } from "./alignment";
+import { type AffineMap, inRange, refine, type Span } from "./alignment";
 import type { Candidate } from "./candidates";
 import { matchingSpans } from "./passages";
 import { lowerBound, type Prepared } from "./prepared";
+import { bestScore, evidenceNats, type Score } from "./score";
 
 /** A verified map with the spans of query peaks that follow it. */
 export interface Alignment {
@@ -39,7 +40,7 @@ export function verifyCandidate(
   if (to - from < 8) return null;
   const first = refine(query, reference, candidate.map, [[from, to]]);
   if (first === null) return null;
-  const score = scoreMap(query, reference, first, [[from, to]]);
+  const score = bestScore(query, reference, first, [[from, to]]);
   if (evidenceNats(score.hits, score.trials, score.chance) < WINDOW_NATS_MIN) return null;
   return grow(query, reference, first, score);
 }
@@ -51,14 +52,14 @@ function grow(query: Prepared, reference: Prepared, start: AffineMap, startScore
   for (let round = 0; round < GROWTH_ROUNDS; round++) {
     const rate = Math.max(RATE_MIN, Math.min(RATE_MAX, RATE_SHARE * (score.hits / score.trials)));
     const chance = Math.min(score.chance, rate / 2);
-    const found = matchingSpans(query, reference, map, rate, chance, PASSAGE_NATS_MIN);
+    const found = matchingSpans(query, reference, map, rate, chance, PASSAGE_NATS_MIN, score.tolerance);
     if (found.length === 0) return null;
     const next = refine(query, reference, map, found, 2);
     if (next === null) return null;
     const unchanged = round > 0 && sameSpans(found, spans);
     spans = found;
     map = next;
-    score = scoreMap(query, reference, map, spans);
+    score = bestScore(query, reference, map, spans);
     if (score.trials === 0) return null;
     if (unchanged) break;
   }
