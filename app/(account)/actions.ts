@@ -8,7 +8,6 @@ import {
   disablePerson,
   enablePerson,
   endMembership,
-  grantMembership,
   invitePerson,
   registerCompany,
   requestSignInLink,
@@ -43,7 +42,6 @@ export const takeInvitationBack = action(withdrawInvitation, {
 export const endRole = action(endMembership, {
   refresh: () => ["/roster", "/company", "/people", "/account"],
 });
-export const giveRole = action(grantMembership, { refresh: () => ["/people"] });
 export const confirmWriter = action(confirmName, { refresh: () => ["/roster"] });
 export const addCompany = action(registerCompany, { refresh: () => ["/account", "/company"] });
 

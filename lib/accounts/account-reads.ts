@@ -1,4 +1,4 @@
-import { and, asc, eq, gt, inArray, isNull, like, or } from "drizzle-orm";
+import { and, asc, eq, gt, inArray, isNotNull, isNull, like, max, or } from "drizzle-orm";
 import { z } from "zod";
 import { invitations, memberships, people } from "@/db/schema/accounts";
 import { EVERYONE, SIGNED_IN } from "@/lib/kernel/actor";
@@ -108,7 +108,10 @@ export const listPeople = query({
   who: ["admin"],
   input: z.object({ text: z.string().trim().max(100).default("") }),
   authorise: open("admins look after accounts and roles"),
-  run: async ({ reader, input }): Promise<{ people: PersonEntry[]; isCut: boolean }> => {
+  run: async ({
+    reader,
+    input,
+  }): Promise<{ people: PersonEntry[]; isCut: boolean; libraries: { id: string; name: string }[] }> => {
     const wanted = `%${input.text.replace(/[\\%_]/g, "\\$&")}%`;
     const rows = await reader
       .select()
@@ -125,7 +128,14 @@ export const listPeople = query({
             .from(memberships)
             .where(and(inArray(memberships.personId, ids), isLive()))
         : [];
+    const libraries = await reader
+      .select({ id: memberships.libraryId, name: max(memberships.scopeName) })
+      .from(memberships)
+      .where(isNotNull(memberships.libraryId))
+      .groupBy(memberships.libraryId)
+      .orderBy(asc(max(memberships.scopeName)));
     return {
+      libraries: libraries.flatMap(({ id, name }) => (id && name ? [{ id, name }] : [])),
       isCut: rows.length > PEOPLE_SHOWN,
       people: shown.map((row) => ({
         id: row.id,

@@ -19,6 +19,16 @@ export const Password = z
 
 const id = z.string().max(40);
 
+/** A field that may stay empty. */
+const blankAsNull = (length: number) =>
+  z
+    .string()
+    .trim()
+    .max(length, `At most ${length} characters.`)
+    .transform((text) => text || null)
+    .nullable()
+    .default(null);
+
 const RoleFields = {
   role: z.enum(ROLES, "Choose a role."),
   libraryId: id.nullable().default(null),
@@ -100,7 +110,7 @@ export const ConfirmName = z.object({
   legalName: PersonName,
   creditName: PersonName,
   ipi: Ipi.nullable().default(null),
-  society: z.string().trim().max(60).nullable().default(null),
+  society: blankAsNull(60),
 });
 
 export const FindWriter = z
@@ -119,7 +129,7 @@ export const RegisterCompany = z.object({
     .trim()
     .toUpperCase()
     .regex(/^[A-Z]{2}$/, "Choose a country."),
-  taxNumber: z.string().trim().max(30).nullable().default(null),
+  taxNumber: blankAsNull(30),
 });
 export type RegisterCompany = z.infer<typeof RegisterCompany>;
 

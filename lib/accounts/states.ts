@@ -42,6 +42,19 @@ export const ROLE_WORDS: Readonly<Record<Role, string>> = {
   admin: "admin",
 };
 
+/** What a role is for, as a sentence to somebody who is offered it. */
+export const ROLE_DUTIES: Readonly<Record<Role, string>> = {
+  composer: "You deliver cues, follow their screening, answer questions about them and read your statements.",
+  owner: "You run the library: its rate card, roster, editorial acceptance, sales and payouts.",
+  staff: "You prepare prices and quotes for the library, and do what its owner grants beside that.",
+  moderator: "You answer what screening has held, and confirm a colleague's refusals.",
+  buyer:
+    "You find, shortlist and propose music for the company's productions, and approve and pay where your seat says so.",
+  accountant: "You reconcile the books and release payouts together with a second person.",
+  auditor: "You read the journal, records and decisions for a stated time. Those audited see your access.",
+  admin: "You look after accounts, keys and settings. You touch no money and take no decisions.",
+};
+
 /** As it reads after "as" and "you are now". */
 export function roleInWords(role: Role, mayApprove: boolean): string {
   switch (role) {
