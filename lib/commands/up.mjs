@@ -96,13 +96,26 @@ async function startDatabase({ wantedPort, secrets }) {
   return port;
 }
 
+/** Another database than our own, named by the person who starts: the application's account and the owner's. */
+function readOtherDatabase() {
+  const { DATABASE_URL, DATABASE_OWNER_URL } = process.env;
+  if (DATABASE_URL === undefined) return null;
+  if (DATABASE_OWNER_URL === undefined) {
+    throw new Stop(
+      "DATABASE_URL is set without DATABASE_OWNER_URL, the account that migrates. Set both, or neither.",
+    );
+  }
+  return { DATABASE_URL, DATABASE_OWNER_URL };
+}
+
 async function prepareEnvironment() {
+  const other = readOtherDatabase();
   const secrets = keepSecrets(join(dataDir, "secrets.json"));
   const portsPath = join(dataDir, "ports.json");
   const ports = await pickPorts(USUAL_PORTS, readPorts(portsPath));
-  ports.database = await startDatabase({ wantedPort: ports.database, secrets });
+  if (other === null) ports.database = await startDatabase({ wantedPort: ports.database, secrets });
   writePrivateFile(portsPath, `${JSON.stringify(ports)}\n`);
-  const values = demoEnvironment({ ports, secrets, mediaDir: makeDataDir("media") });
+  const values = { ...demoEnvironment({ ports, secrets, mediaDir: makeDataDir("media") }), ...other };
   writePrivateFile(join(dataDir, "env"), formatEnv(values));
   return { ports, values };
 }
@@ -160,7 +173,7 @@ async function up() {
   let started;
   await stage("MariaDB", async () => {
     started = await prepareEnvironment();
-    return `on 127.0.0.1:${started.ports.database}`;
+    return `at ${new URL(started.values.DATABASE_URL).host}`;
   });
   const { ports, values } = started;
   await stage("Migrations", () => migrate(values));

@@ -52,9 +52,12 @@ async function startOwn() {
  * points it elsewhere; what `npm run up` runs is shared; otherwise both are started, and `stop` ends them.
  */
 export async function productAtHand() {
-  if (process.env.DATABASE_URL !== undefined) return { values: {}, stop: async () => {} };
   const running = findRunning(join(dataDir, "mariadb"));
   const values = readEnvFile(join(dataDir, "env"));
+  if (process.env.DATABASE_URL !== undefined) {
+    const unset = Object.entries(values ?? {}).filter(([name]) => process.env[name] === undefined);
+    return { values: Object.fromEntries(unset), stop: async () => {} };
+  }
   if (running?.isStarterAlive && values !== null) return { values, stop: async () => {} };
   return startOwn();
 }
