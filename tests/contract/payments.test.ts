@@ -39,7 +39,7 @@ beforeAll(async () => {
     dataDir: dir.path,
     secretKey: STRIPE_SECRET_KEY,
     webhookSecret: STRIPE_WEBHOOK_SECRET,
-    webhookUrl: `${site.url}/api/webhooks/stripe`,
+    webhookUrl: `${site.url}/api/webhooks/payments`,
     firstRetryMs: 10,
   });
   client = openPayments({ STRIPE_SECRET_KEY, STRIPE_WEBHOOK_SECRET, STRIPE_API_BASE: service.url });

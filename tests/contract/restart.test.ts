@@ -47,7 +47,7 @@ afterEach(async () => {
 test("payments: a killed far end keeps payments, keys and the events it still owes", async () => {
   const port = await freePort();
   const start = () =>
-    spawnStandIn("payments", dir.path, port, { STRIPE_WEBHOOK_URL: `${site.url}/api/webhooks/stripe` });
+    spawnStandIn("payments", dir.path, port, { STRIPE_WEBHOOK_URL: `${site.url}/api/webhooks/payments` });
   running = await start();
   const client = openPayments({ STRIPE_SECRET_KEY, STRIPE_WEBHOOK_SECRET, STRIPE_API_BASE: running.url });
   const request = {
