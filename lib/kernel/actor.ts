@@ -38,7 +38,12 @@ export const SIGNED_IN = [
   "admin",
 ] as const satisfies readonly SignedIn["kind"][];
 
-export const EVERYONE = ["anonymous", "guest", ...SIGNED_IN, "system"] as const satisfies readonly ActorKind[];
+export const EVERYONE = [
+  "anonymous",
+  "guest",
+  ...SIGNED_IN,
+  "system",
+] as const satisfies readonly ActorKind[];
 
 export const ANONYMOUS: Actor = { kind: "anonymous" };
 
@@ -54,7 +59,11 @@ export function isMarketplace(actor: Actor): boolean {
 }
 
 /** One line for the audit log: kind, person or job, scope. */
-export function describeActor(actor: Actor): { kind: ActorKind; personId: string | null; scope: string | null } {
+export function describeActor(actor: Actor): {
+  kind: ActorKind;
+  personId: string | null;
+  scope: string | null;
+} {
   switch (actor.kind) {
     case "anonymous":
       return { kind: actor.kind, personId: null, scope: null };

@@ -32,7 +32,10 @@ export async function writeAudit(
 }
 
 /** The result of an operation that has already been carried out, or null. */
-export async function findOperation(reader: Reader, operationId: string): Promise<{ verb: string; result: unknown } | null> {
+export async function findOperation(
+  reader: Reader,
+  operationId: string,
+): Promise<{ verb: string; result: unknown } | null> {
   const [row] = await reader
     .select({ verb: auditLog.verb, result: auditLog.result })
     .from(auditLog)

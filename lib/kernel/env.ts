@@ -34,9 +34,18 @@ const Environment = z
   })
   .superRefine((value, context) => {
     if (value.SEDGEWREN_MODE !== "live") return;
-    for (const name of ["STRIPE_API_BASE", "RESEND_BASE_URL", "UPLOADTHING_API_URL", "BUSINESS_CLOCK_START"] as const) {
+    for (const name of [
+      "STRIPE_API_BASE",
+      "RESEND_BASE_URL",
+      "UPLOADTHING_API_URL",
+      "BUSINESS_CLOCK_START",
+    ] as const) {
       if (value[name] !== undefined) {
-        context.addIssue({ code: "custom", path: [name], message: "must not be set in live mode: it points at a stand-in or sets the clock" });
+        context.addIssue({
+          code: "custom",
+          path: [name],
+          message: "must not be set in live mode: it points at a stand-in or sets the clock",
+        });
       }
     }
   });

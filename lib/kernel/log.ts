@@ -6,7 +6,10 @@ const context = new AsyncLocalStorage<{ requestId: string }>();
 export const log = pino({
   level: process.env.LOG_LEVEL ?? (process.env.VITEST ? "silent" : "info"),
   base: null,
-  redact: { paths: ["password", "secret", "token", "*.password", "*.secret", "*.token", "contact"], censor: "[kept back]" },
+  redact: {
+    paths: ["password", "secret", "token", "*.password", "*.secret", "*.token", "contact"],
+    censor: "[kept back]",
+  },
   mixin: () => context.getStore() ?? {},
 });
 

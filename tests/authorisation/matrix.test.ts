@@ -31,7 +31,9 @@ describe("the matrix", () => {
   });
 
   describe.each(Object.entries(rows))("%s", (name, row) => {
-    test.each(COLUMNS.map((column): [Column, string] => [column, row.may.includes(column) ? "may" : "may not"]))("%s %s", async (column, may) => {
+    test.each(
+      COLUMNS.map((column): [Column, string] => [column, row.may.includes(column) ? "may" : "may not"]),
+    )("%s %s", async (column, may) => {
       const verb = registeredVerbs().get(name);
       if (!verb) throw new Error(`no verb ${name}`);
       const input = await row.input(world, column);
