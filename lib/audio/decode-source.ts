@@ -189,11 +189,22 @@ async function* flacBlocks(source: ByteSource, facts: ContainerFacts): AsyncGene
 
 function flacDecoded(out: Awaited<ReturnType<FLACDecoder["decode"]>>): Decoded {
   const first = out.errors[0];
+  if (out.samplesDecoded > 0) for (const channel of out.channelData) toFullScale(channel, out.bitDepth);
   return {
     channels: out.samplesDecoded > 0 ? out.channelData : [],
     broken: 0,
     ...(first ? { error: `a FLAC frame does not decode: ${first.message}` } : {}),
   };
+}
+
+/**
+ * FLACDecoder divides by 2^(bits − 1) − 1; every other reader here by 2^(bits − 1). The integer is found again exactly
+ * (float32 holds 24 bits), so that a FLAC and the WAV it was made from give the same samples.
+ */
+function toFullScale(channel: Float32Array, bits: number): void {
+  if (!(bits >= 4 && bits <= 24)) return;
+  const full = 2 ** (bits - 1);
+  for (let i = 0; i < channel.length; i++) channel[i] = Math.round(channel[i]! * (full - 1)) / full;
 }
 
 const PACKAGE_FORMATS = {

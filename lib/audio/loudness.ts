@@ -58,6 +58,7 @@ export class LoudnessMeter {
   private bins = 0;
   private nextEdge: number;
   private binSamples = 0;
+  private ended = false;
   private maxMomentary = 0;
   private maxShortTerm = 0;
   private maxShortTermBin = 0;
@@ -95,6 +96,7 @@ export class LoudnessMeter {
     const { maxMomentary, maxShortTerm } = this;
     let rangeLu: number | null = null;
     if (measuredBins >= SHORT_TERM_BINS) {
+      this.ended = true;
       // Tech 3342 §5: a file is followed by silence before the last reading.
       for (let i = 0; i < 1.5 * BINS_PER_S; i++) this.enterBin(0);
       rangeLu = this.range();
@@ -165,6 +167,7 @@ export class LoudnessMeter {
     if (this.bins % HOP_BINS !== 0) return;
     this.blocks.add(momentary);
     if (shortTerm !== null) this.shortTerms.add(shortTerm);
+    if (this.ended) return;
     this.options.onReading?.(
       this.bins / BINS_PER_S,
       toLufs(momentary),

@@ -59,15 +59,16 @@ export function song({ rateHz, bpm, durationS, chords, seed = 1 }: Song): [Float
   const right = new Float32Array(length);
   const beatS = 60 / bpm;
   const grain = noise(rateHz, seed);
+  const plucks = new Plucks(rateHz);
   for (let beat = 0; beat * beatS < durationS; beat++) {
     const chord = chords[Math.floor(beat / 4) % chords.length]!;
     const at = Math.round(beat * beatS * rateHz);
     chord.forEach((note, n) => {
-      pluck(left, at, rateHz, note, 0.09 * (n % 2 ? 0.6 : 1), beatS * 1.6);
-      pluck(right, at, rateHz, note, 0.09 * (n % 2 ? 1 : 0.6), beatS * 1.6);
+      plucks.add(left, at, note, 0.09 * (n % 2 ? 0.6 : 1), beatS * 1.6);
+      plucks.add(right, at, note, 0.09 * (n % 2 ? 1 : 0.6), beatS * 1.6);
     });
     if (beat % 2 === 0)
-      for (const side of [left, right]) pluck(side, at, rateHz, chord[0]! - 12, 0.16, beatS * 2);
+      for (const side of [left, right]) plucks.add(side, at, chord[0]! - 12, 0.16, beatS * 2);
     const loud = beat % 2 === 1 ? 0.12 : 0.05;
     for (let i = 0; i < 0.06 * rateHz && at + i < length; i++) {
       const hit = loud * grain[(i * 7 + beat * 131) % grain.length]! * Math.exp(-i / (0.012 * rateHz));
@@ -78,24 +79,33 @@ export function song({ rateHz, bpm, durationS, chords, seed = 1 }: Song): [Float
   return [left, right];
 }
 
-function pluck(
-  out: Float32Array,
-  at: number,
-  rateHz: number,
-  note: number,
-  amplitude: number,
-  decayS: number,
-): void {
+/** Notes come back: each is computed once per call of song(). */
+class Plucks {
+  private readonly made = new Map<string, Float32Array>();
+  constructor(private readonly rateHz: number) {}
+
+  add(out: Float32Array, at: number, note: number, amplitude: number, decayS: number): void {
+    const key = `${note} ${decayS}`;
+    let wave = this.made.get(key);
+    if (!wave) {
+      wave = pluck(this.rateHz, note, decayS);
+      this.made.set(key, wave);
+    }
+    const end = Math.min(wave.length, out.length - at);
+    for (let i = 0; i < end; i++) out[at + i] = out[at + i]! + amplitude * wave[i]!;
+  }
+}
+
+function pluck(rateHz: number, note: number, decayS: number): Float32Array {
   const hz = 440 * 2 ** ((note - 69) / 12);
   const attack = 0.004 * rateHz;
-  for (let i = 0; i < 2.5 * decayS * rateHz && at + i < out.length; i++) {
-    const envelope = Math.min(1, i / attack) * Math.exp(-i / (0.4 * decayS * rateHz));
+  return Float32Array.from({ length: Math.round(2.5 * decayS * rateHz) }, (_, i) => {
     let value = 0;
     for (let h = 1; h <= 4 && h * hz < rateHz * 0.45; h++) {
       value += Math.sin((2 * Math.PI * hz * h * i) / rateHz) / h ** 1.6;
     }
-    out[at + i] = out[at + i]! + amplitude * envelope * value;
-  }
+    return Math.min(1, i / attack) * Math.exp(-i / (0.4 * decayS * rateHz)) * value;
+  });
 }
 
 /** C F G Am and so on as MIDI notes around middle C. */
