@@ -1,8 +1,8 @@
 "use client";
 
 import { Button } from "@/components/ui/button";
-import { HeadSentence, Page } from "@/components/ui/page";
-import { Sentence } from "@/components/ui/sentence";
+import { Page } from "@/components/ui/page";
+import { HeadSentence, Sentence } from "@/components/ui/sentence";
 
 export default function ErrorPage({ error, reset }: { error: Error & { digest?: string }; reset: () => void }) {
   return (

@@ -1,6 +1,6 @@
 import { TextLink } from "@/components/ui/button";
-import { HeadSentence, Page } from "@/components/ui/page";
-import { Sentence } from "@/components/ui/sentence";
+import { Page } from "@/components/ui/page";
+import { HeadSentence, Sentence } from "@/components/ui/sentence";
 
 export default function NotFoundPage() {
   return (
