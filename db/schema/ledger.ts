@@ -31,6 +31,8 @@ export const ledgerEntries = mysqlTable(
     /** What it is about, so that statements need no upward read. */
     libraryId: id("library_id"),
     orderId: id("order_id"),
+    /** The processor's charge, refund or dispute behind it: what its own book is matched by. */
+    processorSource: ascii(80)("processor_source"),
     facts: jsonOf<Record<string, unknown>>("facts").notNull(),
     actorKind: ascii(20)("actor_kind").notNull(),
     actorPersonId: id("actor_person_id"),
@@ -41,6 +43,8 @@ export const ledgerEntries = mysqlTable(
     index("ledger_entries_posted").on(table.postedAt),
     index("ledger_entries_library").on(table.libraryId, table.postedAt),
     index("ledger_entries_order").on(table.orderId),
+    index("ledger_entries_code").on(table.code, table.eventAt),
+    index("ledger_entries_source").on(table.processorSource),
   ],
 );
 
@@ -66,6 +70,7 @@ export const ledgerTransfers = mysqlTable(
     index("ledger_transfers_entry").on(table.entryId, table.number),
     index("ledger_transfers_debit").on(table.debitAccountId),
     index("ledger_transfers_credit").on(table.creditAccountId),
+    index("ledger_transfers_line").on(table.orderLineId),
     check("ledger_transfers_positive", sql`${table.amountMinor} > 0`),
     check("ledger_transfers_two", sql`${table.debitAccountId} <> ${table.creditAccountId}`),
   ],
@@ -84,6 +89,9 @@ export const payees = mysqlTable(
     countryCode: ascii(2)("country_code").notNull(),
     /** not started, under way, ready */
     state: ascii(12)("state").notNull(),
+    /** The processor's name of the bank account, and its last four digits: all that is known of it here. */
+    bankRef: ascii(60)("bank_ref"),
+    bankLast4: ascii(4)("bank_last4"),
     bankChangedAt: at("bank_changed_at"),
     createdAt: at("created_at").notNull(),
   },
@@ -108,7 +116,9 @@ export const payoutRuns = mysqlTable("payout_runs", {
   id: id("id").primaryKey(),
   libraryId: id("library_id").notNull(),
   currency: ascii(3)("currency").notNull(),
+  /** prepared, released, confirmed, withdrawn */
   state: ascii(12)("state").notNull(),
+  preparedBy: id("prepared_by").notNull(),
   preparedAt: at("prepared_at").notNull(),
   releasedBy: id("released_by"),
   releasedAt: at("released_at"),
@@ -122,11 +132,15 @@ export const payouts = mysqlTable(
   {
     id: id("id").primaryKey(),
     runId: id("run_id").notNull(),
-    payeeId: id("payee_id").notNull(),
+    libraryId: id("library_id").notNull(),
+    /** library or person */
+    kind: ascii(8)("kind").notNull(),
     holderId: id("holder_id").notNull(),
+    /** Null while the holder has not begun to be a payee. */
+    payeeId: id("payee_id"),
     amountMinor: minor("amount_minor").notNull(),
     currency: ascii(3)("currency").notNull(),
-    /** prepared, sending, paid, carried, failed */
+    /** prepared, sending, paid, carried, failed, withdrawn */
     state: ascii(12)("state").notNull(),
     reason: varchar("reason", { length: 300 }).notNull(),
     processorTransfer: ascii(60)("processor_transfer"),
