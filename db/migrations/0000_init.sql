@@ -444,6 +444,7 @@ CREATE TABLE `ledger_entries` (
 	`reverses` varchar(40) character set ascii collate ascii_bin,
 	`library_id` varchar(40) character set ascii collate ascii_bin,
 	`order_id` varchar(40) character set ascii collate ascii_bin,
+	`processor_source` varchar(80) character set ascii collate ascii_bin,
 	`facts` json NOT NULL,
 	`actor_kind` varchar(20) character set ascii collate ascii_bin NOT NULL,
 	`actor_person_id` varchar(40) character set ascii collate ascii_bin,
@@ -479,6 +480,8 @@ CREATE TABLE `payees` (
 	`legal_name` varchar(200) NOT NULL,
 	`country_code` varchar(2) character set ascii collate ascii_bin NOT NULL,
 	`state` varchar(12) character set ascii collate ascii_bin NOT NULL,
+	`bank_ref` varchar(60) character set ascii collate ascii_bin,
+	`bank_last4` varchar(4) character set ascii collate ascii_bin,
 	`bank_changed_at` datetime(3),
 	`created_at` datetime(3) NOT NULL,
 	CONSTRAINT `payees_id` PRIMARY KEY(`id`),
@@ -498,6 +501,7 @@ CREATE TABLE `payout_runs` (
 	`library_id` varchar(40) character set ascii collate ascii_bin NOT NULL,
 	`currency` varchar(3) character set ascii collate ascii_bin NOT NULL,
 	`state` varchar(12) character set ascii collate ascii_bin NOT NULL,
+	`prepared_by` varchar(40) character set ascii collate ascii_bin NOT NULL,
 	`prepared_at` datetime(3) NOT NULL,
 	`released_by` varchar(40) character set ascii collate ascii_bin,
 	`released_at` datetime(3),
@@ -510,8 +514,10 @@ CREATE TABLE `payout_runs` (
 CREATE TABLE `payouts` (
 	`id` varchar(40) character set ascii collate ascii_bin NOT NULL,
 	`run_id` varchar(40) character set ascii collate ascii_bin NOT NULL,
-	`payee_id` varchar(40) character set ascii collate ascii_bin NOT NULL,
+	`library_id` varchar(40) character set ascii collate ascii_bin NOT NULL,
+	`kind` varchar(8) character set ascii collate ascii_bin NOT NULL,
 	`holder_id` varchar(40) character set ascii collate ascii_bin NOT NULL,
+	`payee_id` varchar(40) character set ascii collate ascii_bin,
 	`amount_minor` bigint NOT NULL,
 	`currency` varchar(3) character set ascii collate ascii_bin NOT NULL,
 	`state` varchar(12) character set ascii collate ascii_bin NOT NULL,
@@ -563,7 +569,6 @@ CREATE TABLE `licence_records` (
 	`signature` varchar(200) character set ascii collate ascii_bin NOT NULL,
 	`last_use_at` datetime(3),
 	`issued_at` datetime(3) NOT NULL,
-	`disclosed` boolean NOT NULL DEFAULT true,
 	CONSTRAINT `licence_records_number` PRIMARY KEY(`number`),
 	CONSTRAINT `licence_records_proof` UNIQUE(`proof_code`),
 	CONSTRAINT `licence_records_line` UNIQUE(`order_line_id`)
@@ -572,13 +577,24 @@ CREATE TABLE `licence_records` (
 CREATE TABLE `licence_status_events` (
 	`id` varchar(40) character set ascii collate ascii_bin NOT NULL,
 	`licence_number` varchar(24) character set ascii collate ascii_bin NOT NULL,
+	`sequence` int NOT NULL,
 	`status` varchar(40) character set ascii collate ascii_bin NOT NULL,
 	`words` varchar(500) NOT NULL,
 	`effective_at` datetime(3) NOT NULL,
 	`recorded_at` datetime(3) NOT NULL,
 	`canonical` text NOT NULL,
 	`sha256` varchar(64) character set ascii collate ascii_bin NOT NULL,
-	CONSTRAINT `licence_status_events_id` PRIMARY KEY(`id`)
+	CONSTRAINT `licence_status_events_id` PRIMARY KEY(`id`),
+	CONSTRAINT `licence_status_events_once` UNIQUE(`licence_number`,`sequence`)
+);
+--> statement-breakpoint
+CREATE TABLE `licence_visibility` (
+	`licence_number` varchar(24) character set ascii collate ascii_bin NOT NULL,
+	`withheld` json NOT NULL,
+	`changed_by` varchar(40) character set ascii collate ascii_bin NOT NULL,
+	`changed_at` datetime(3) NOT NULL,
+	`version` int NOT NULL DEFAULT 1,
+	CONSTRAINT `licence_visibility_licence_number` PRIMARY KEY(`licence_number`)
 );
 --> statement-breakpoint
 CREATE TABLE `master_downloads` (
@@ -612,6 +628,20 @@ CREATE TABLE `order_lines` (
 	CONSTRAINT `order_lines_once` UNIQUE(`order_id`,`number`)
 );
 --> statement-breakpoint
+CREATE TABLE `order_refunds` (
+	`id` varchar(40) character set ascii collate ascii_bin NOT NULL,
+	`order_id` varchar(40) character set ascii collate ascii_bin NOT NULL,
+	`line_ids` json NOT NULL,
+	`amount_minor` bigint NOT NULL,
+	`words` varchar(500) NOT NULL,
+	`state` varchar(8) character set ascii collate ascii_bin NOT NULL,
+	`processor_refund` varchar(80) character set ascii collate ascii_bin,
+	`asked_by` varchar(40) character set ascii collate ascii_bin,
+	`asked_at` datetime(3) NOT NULL,
+	`done_at` datetime(3),
+	CONSTRAINT `order_refunds_id` PRIMARY KEY(`id`)
+);
+--> statement-breakpoint
 CREATE TABLE `orders` (
 	`id` varchar(40) character set ascii collate ascii_bin NOT NULL,
 	`number` int NOT NULL,
@@ -627,6 +657,7 @@ CREATE TABLE `orders` (
 	`state_words` varchar(500) NOT NULL,
 	`licensee` json NOT NULL,
 	`acceptance` json,
+	`checkout_attempt` int NOT NULL DEFAULT 0,
 	`checkout_session` varchar(120) character set ascii collate ascii_bin,
 	`payment_intent` varchar(80) character set ascii collate ascii_bin,
 	`placed_by` varchar(40) character set ascii collate ascii_bin NOT NULL,
@@ -647,6 +678,22 @@ CREATE TABLE `rate_cards` (
 	`created_by` varchar(40) character set ascii collate ascii_bin,
 	CONSTRAINT `rate_cards_id` PRIMARY KEY(`id`),
 	CONSTRAINT `rate_cards_once` UNIQUE(`library_id`,`version`)
+);
+--> statement-breakpoint
+CREATE TABLE `record_log` (
+	`day` varchar(10) character set ascii collate ascii_bin NOT NULL,
+	`position` int NOT NULL,
+	`kind` varchar(8) character set ascii collate ascii_bin NOT NULL,
+	`licence_number` varchar(24) character set ascii collate ascii_bin NOT NULL,
+	`leaf` text NOT NULL,
+	CONSTRAINT `record_log_day_position_pk` PRIMARY KEY(`day`,`position`)
+);
+--> statement-breakpoint
+CREATE TABLE `record_log_head` (
+	`name` varchar(10) character set ascii collate ascii_bin NOT NULL,
+	`published_through` varchar(10) character set ascii collate ascii_bin,
+	`version` int NOT NULL DEFAULT 1,
+	CONSTRAINT `record_log_head_name` PRIMARY KEY(`name`)
 );
 --> statement-breakpoint
 CREATE TABLE `signing_keys` (
@@ -1038,9 +1085,12 @@ CREATE INDEX `advances_person` ON `advances` (`person_id`,`library_id`);--> stat
 CREATE INDEX `ledger_entries_posted` ON `ledger_entries` (`posted_at`);--> statement-breakpoint
 CREATE INDEX `ledger_entries_library` ON `ledger_entries` (`library_id`,`posted_at`);--> statement-breakpoint
 CREATE INDEX `ledger_entries_order` ON `ledger_entries` (`order_id`);--> statement-breakpoint
+CREATE INDEX `ledger_entries_code` ON `ledger_entries` (`code`,`event_at`);--> statement-breakpoint
+CREATE INDEX `ledger_entries_source` ON `ledger_entries` (`processor_source`);--> statement-breakpoint
 CREATE INDEX `ledger_transfers_entry` ON `ledger_transfers` (`entry_id`,`number`);--> statement-breakpoint
 CREATE INDEX `ledger_transfers_debit` ON `ledger_transfers` (`debit_account_id`);--> statement-breakpoint
 CREATE INDEX `ledger_transfers_credit` ON `ledger_transfers` (`credit_account_id`);--> statement-breakpoint
+CREATE INDEX `ledger_transfers_line` ON `ledger_transfers` (`order_line_id`);--> statement-breakpoint
 CREATE INDEX `payment_events_type` ON `payment_events` (`type`);--> statement-breakpoint
 CREATE INDEX `payouts_run` ON `payouts` (`run_id`);--> statement-breakpoint
 CREATE INDEX `payouts_holder` ON `payouts` (`holder_id`);--> statement-breakpoint
@@ -1048,13 +1098,14 @@ CREATE INDEX `invoices_order` ON `invoices` (`order_id`);--> statement-breakpoin
 CREATE INDEX `licence_records_company` ON `licence_records` (`company_id`);--> statement-breakpoint
 CREATE INDEX `licence_records_family` ON `licence_records` (`family_id`);--> statement-breakpoint
 CREATE INDEX `licence_records_library` ON `licence_records` (`library_id`,`issued_at`);--> statement-breakpoint
-CREATE INDEX `licence_status_events_licence` ON `licence_status_events` (`licence_number`,`effective_at`);--> statement-breakpoint
 CREATE INDEX `master_downloads_licence` ON `master_downloads` (`licence_number`);--> statement-breakpoint
 CREATE INDEX `order_lines_family` ON `order_lines` (`family_id`);--> statement-breakpoint
+CREATE INDEX `order_refunds_order` ON `order_refunds` (`order_id`);--> statement-breakpoint
 CREATE INDEX `orders_company` ON `orders` (`company_id`);--> statement-breakpoint
 CREATE INDEX `orders_library` ON `orders` (`library_id`,`placed_at`);--> statement-breakpoint
 CREATE INDEX `orders_session` ON `orders` (`checkout_session`);--> statement-breakpoint
 CREATE INDEX `orders_intent` ON `orders` (`payment_intent`);--> statement-breakpoint
+CREATE INDEX `record_log_licence` ON `record_log` (`licence_number`);--> statement-breakpoint
 CREATE INDEX `productions_company` ON `productions` (`company_id`);--> statement-breakpoint
 CREATE INDEX `notice_events_notice` ON `notice_events` (`notice_id`,`at`);--> statement-breakpoint
 CREATE INDEX `notices_state` ON `notices` (`state`,`received_at`);--> statement-breakpoint
