@@ -46,6 +46,8 @@ export async function runWorker(options: WorkerOptions): Promise<void> {
   };
 
   while (!options.signal.aborted) {
+    // Taken before the claims: a job that ends after them may have enqueued another.
+    const wasIdle = running.size === 0;
     try {
       if (Date.now() - lastTick > TICK_MS) {
         lastTick = Date.now();
@@ -65,7 +67,7 @@ export async function runWorker(options: WorkerOptions): Promise<void> {
         start(job, () => lightRunning--);
       }
       if (heavy.length + light.length > 0) continue;
-      if (options.untilIdle && running.size === 0) break;
+      if (options.untilIdle && wasIdle) break;
     } catch (error) {
       log.error({ error: String(error) }, "the worker could not reach the queue; it tries again");
       await pause(1000, options.signal);
