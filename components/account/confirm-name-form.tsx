@@ -25,7 +25,12 @@ export function ConfirmNameForm({ writer, isConfirmed, onDone }: ConfirmNameForm
   const submit = form.handleSubmit(() => confirm.run(form.getValues(), onDone));
   return (
     <form className="grid gap-4 py-3 sm:grid-cols-2" noValidate onSubmit={submit}>
-      <TextField error={errorAt("legalName")} label="Legal name" {...form.register("legalName")} />
+      <TextField
+        error={errorAt("legalName")}
+        hint="As it stands in the contract."
+        label="Legal name"
+        {...form.register("legalName")}
+      />
       <TextField
         error={errorAt("creditName")}
         hint="As it stands in credits and cue sheets."
@@ -40,7 +45,13 @@ export function ConfirmNameForm({ writer, isConfirmed, onDone }: ConfirmNameForm
         optional
         {...form.register("ipi")}
       />
-      <TextField error={errorAt("society")} label="Society" optional {...form.register("society")} />
+      <TextField
+        error={errorAt("society")}
+        hint="Where the writer is registered."
+        label="Society"
+        optional
+        {...form.register("society")}
+      />
       <div className="sm:col-span-2">
         <Refusal
           className="mb-3"

@@ -39,6 +39,11 @@ export function SecondFactorSetup({ isInUse, pending }: SecondFactorSetupProps) 
           Scan the square with an authenticator app, or type this into it:{" "}
           <b className="font-strong figures">{grouped}</b>. Then write the code it shows.
         </p>
+        {isInUse && (
+          <p className="max-w-measure">
+            The factor in use stays in use until you give this one’s first code.
+          </p>
+        )}
         <CodeForm button="Use this factor" demonstration={null} to="/account?after=factor" />
       </div>
     </div>

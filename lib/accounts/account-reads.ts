@@ -71,6 +71,7 @@ export const demonstrationSignIns = query({
     if (env.SEDGEWREN_MODE !== "demo") return [];
     const rows = await reader
       .select({
+        personId: people.id,
         name: people.name,
         email: people.email,
         role: memberships.role,
@@ -82,7 +83,11 @@ export const demonstrationSignIns = query({
       .where(and(eq(people.demo, true), isNull(people.disabledAt), isLive()))
       .orderBy(asc(memberships.createdAt), asc(memberships.id));
     const shown = new Map<string, DemonstrationSignIn>();
+    const seen = new Set<string>();
     for (const row of rows) {
+      // Only a person's first role is promised here, because that is the one in use after a first sign-in.
+      if (seen.has(row.personId)) continue;
+      seen.add(row.personId);
       const kind = roleOf(row.role);
       const key = `${kind}:${row.libraryId === null}`;
       if (shown.has(key)) continue;

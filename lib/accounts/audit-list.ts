@@ -1,3 +1,6 @@
+import { eq, inArray } from "drizzle-orm";
+import type { Reader } from "@/db/client";
+import { invitations, memberships, people } from "@/db/schema/accounts";
 import type { ActorOf } from "@/lib/kernel/actor";
 import { type AuditRow, listAuditRows } from "@/lib/kernel/audit-list";
 import { open, query } from "@/lib/kernel/verb";
@@ -14,6 +17,8 @@ export interface AuditLine {
   /** "catalogue: place hold" */
   did: string;
   subject: string;
+  /** The subject as a name, where it is a person, a role or an invitation. */
+  subjectName: string | null;
 }
 
 const PAGE_ROWS = 50;
@@ -22,6 +27,31 @@ const PAGE_ROWS = 50;
 export function verbInWords(verb: string): string {
   const [room = "", name = ""] = verb.split(".");
   return `${room}: ${name.replace(/[A-Z]/g, (letter) => ` ${letter.toLowerCase()}`)}`;
+}
+
+/** Names for this room's own subjects. The rows are the looker's to read, so these names are too. */
+async function subjectNames(reader: Reader, subjects: readonly string[]): Promise<Map<string, string>> {
+  const of = (prefix: string) => [...new Set(subjects.filter((subject) => subject.startsWith(`${prefix}_`)))];
+  const names = new Map<string, string>();
+  for (const person of (await peopleByIds(reader, of("per"))).values()) names.set(person.id, person.name);
+  const roles = of("mem");
+  if (roles.length > 0) {
+    const rows = await reader
+      .select({ id: memberships.id, name: people.name, role: memberships.role })
+      .from(memberships)
+      .innerJoin(people, eq(people.id, memberships.personId))
+      .where(inArray(memberships.id, roles));
+    for (const row of rows) names.set(row.id, `${row.name}, ${row.role}`);
+  }
+  const invited = of("inv");
+  if (invited.length > 0) {
+    const rows = await reader
+      .select({ id: invitations.id, name: invitations.name, role: invitations.role })
+      .from(invitations)
+      .where(inArray(invitations.id, invited));
+    for (const row of rows) names.set(row.id, `${row.name}, ${row.role}`);
+  }
+  return names;
 }
 
 type Looker = ActorOf<"owner" | "auditor" | "admin">;
@@ -58,6 +88,10 @@ export const auditList = query({
       reader,
       shown.flatMap((row) => row.actorPersonId ?? []),
     );
+    const subjects = await subjectNames(
+      reader,
+      shown.map((row) => row.subject),
+    );
     return {
       lines: shown.map((row) => ({
         id: row.id,
@@ -67,6 +101,7 @@ export const auditList = query({
         role: row.actorKind,
         did: verbInWords(row.verb),
         subject: row.subject,
+        subjectName: subjects.get(row.subject) ?? null,
       })),
       next: rows.length > PAGE_ROWS ? (shown.at(-1)?.id ?? null) : null,
     };

@@ -28,7 +28,7 @@ export default async function LogPage({ searchParams }: { searchParams: SearchPa
   });
   return (
     <Page>
-      <HeadSentence place={subject ? `About ${subject}` : "Log"}>
+      <HeadSentence place={subject ? `About ${lines[0]?.subjectName ?? subject}` : "Log"}>
         {actor.kind === "admin"
           ? "Everything that was changed, by whom, newest first."
           : "Everything that was changed in this library, by whom, newest first."}
@@ -55,7 +55,9 @@ export default async function LogPage({ searchParams }: { searchParams: SearchPa
               key: "subject",
               head: "About",
               cell: (line) => (
-                <TextLink href={`/log?about=${encodeURIComponent(line.subject)}`}>{line.subject}</TextLink>
+                <TextLink href={`/log?about=${encodeURIComponent(line.subject)}`}>
+                  {line.subjectName ?? line.subject}
+                </TextLink>
               ),
             },
           ]}
@@ -65,7 +67,10 @@ export default async function LogPage({ searchParams }: { searchParams: SearchPa
             <>
               {line.did}, by {whoOf(line)}
               <span className="block text-small text-ink-soft">
-                {fmt.dateTime(line.at)}, about <span className="break-all">{line.subject}</span>
+                {fmt.dateTime(line.at)}, about{" "}
+                <TextLink className="break-all" href={`/log?about=${encodeURIComponent(line.subject)}`}>
+                  {line.subjectName ?? line.subject}
+                </TextLink>
               </span>
             </>
           )}

@@ -20,7 +20,7 @@ export default async function SecondFactorPage({ searchParams }: { searchParams:
   const home = roles.some((role) => role.current)
     ? navFor(actor.kind, isMarketplace(actor))[0]?.href
     : "/account";
-  const to = whereTo(search.to) ?? home ?? "/";
+  const asked = whereTo(search.to);
   const account = await getAccount(actor, {});
   const isDue =
     account.secondFactorSince !== null && (!actor.secondFactorAt || wordOf(search.again) !== null);
@@ -44,7 +44,7 @@ export default async function SecondFactorPage({ searchParams }: { searchParams:
       </Page>
     );
   }
-  if (!isDue) redirect(to);
+  if (!isDue) redirect(asked ?? home ?? "/");
   const filled = account.demo ? await demonstrationCode(actor, {}) : null;
   return (
     <Page>
@@ -54,7 +54,7 @@ export default async function SecondFactorPage({ searchParams }: { searchParams:
           : `Welcome, ${account.name}; now the code of your second factor.`}
       </HeadSentence>
       <div className="mt-6">
-        <CodeForm demonstration={filled} to={to} />
+        <CodeForm demonstration={filled} to={asked ?? "/sign-in/second-factor"} />
       </div>
     </Page>
   );
