@@ -42,6 +42,7 @@ export {
   PITCH_CLASSES,
   type PitchClass,
 } from "./key";
+export { LoudnessMeter } from "./loudness";
 export { type Measured, type MeasureOptions, measureFile, type OnAnalysis } from "./measure-file";
 export { createMeter, type Measures, type Meter } from "./meter";
 export { encodePreview, type Preview, type PreviewOptions } from "./preview";

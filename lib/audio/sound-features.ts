@@ -9,6 +9,8 @@ const MEL_BANDS = 32;
 const MFCC = 13;
 const SHAPE_POINTS = 16;
 const SILENCE_POWER = 1e-8;
+/** Bands this far under their frame count as empty; relative, so that gain does not change the shape. */
+const BAND_FLOOR = 1e-6;
 
 /** Places of each part in the packed vector. Append only: stored vectors are read by these. */
 export const FEATURE_LAYOUT = {
@@ -101,7 +103,7 @@ function frameValues(
   const logs = filters.map(({ first, weights }) => {
     let energy = 0;
     for (let i = 0; i < weights.length; i++) energy += weights[i]! * power[first + i]!;
-    return Math.log(energy + 1e-10);
+    return Math.log(energy + BAND_FLOOR * total);
   });
   for (let c = 0; c < MFCC; c++) {
     let sum = 0;

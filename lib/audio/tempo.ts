@@ -14,6 +14,8 @@ const BPM_MAX = 240;
 const PRIOR_BPM = 120;
 const PRIOR_OCTAVES = 1;
 const STEP_BPM = 0.25;
+/** The window sliding over a steady tone makes ripples under this (nats a band). */
+const STRENGTH_MIN = 0.05;
 
 export function tempoPrior(bpm: number): number {
   return Math.exp(-0.5 * (Math.log2(bpm / PRIOR_BPM) / PRIOR_OCTAVES) ** 2);
@@ -31,6 +33,7 @@ export function tempoPrior(bpm: number): number {
 export function estimateTempo(samples: Float32Array): TempoEstimate | null {
   const strength = onsetStrength(samples);
   if (strength.length < 4 * ONSET_RATE_HZ) return null;
+  if (strength.reduce((most, value) => Math.max(most, value), 0) < STRENGTH_MIN) return null;
   const lagMax = Math.ceil((4 * 60 * ONSET_RATE_HZ) / BPM_MIN) + 2;
   const correlation = autocorrelation(strength, Math.min(lagMax, strength.length - 1));
   if (!correlation) return null;

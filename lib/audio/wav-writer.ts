@@ -27,7 +27,7 @@ export async function createWavWriter(
 ): Promise<WavWriter> {
   const file = await open(path, "w", 0o644);
   const body = bext ? buildBext(bext) : new Uint8Array(0);
-  const headBytes = header({ channels, sampleRateHz, body, frames: 0 }).length;
+  const headBytes = wavHeader({ channels, sampleRateHz, body, frames: 0 }).length;
   let frames = 0;
   let at = headBytes;
   return {
@@ -43,7 +43,7 @@ export async function createWavWriter(
           await writeAll(file, new Uint8Array(1), at);
           at++;
         }
-        await writeAll(file, header({ channels, sampleRateHz, body, frames }), 0);
+        await writeAll(file, wavHeader({ channels, sampleRateHz, body, frames }), 0);
       } finally {
         await file.close();
       }
@@ -59,7 +59,8 @@ async function writeAll(file: FileHandle, bytes: Uint8Array, position: number): 
   }
 }
 
-function header(wav: {
+/** All bytes before the samples; of one length whatever `frames` is. */
+export function wavHeader(wav: {
   channels: number;
   sampleRateHz: number;
   body: Uint8Array;

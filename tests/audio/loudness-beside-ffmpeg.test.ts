@@ -7,6 +7,12 @@ import { CHORDS, noise, song, tones } from "./signals";
 // The other meter is ffmpeg's ebur128 filter, an independent implementation of BS.1770 and Tech 3342.
 const folder = tempFolder();
 
+/** Averaged twice: up to half the sample rate any two interpolation filters differ. */
+function softNoise(length: number, seed: number): Float32Array {
+  const once = noise(length, seed).map((value, i, all) => 0.5 * (value + (all[i - 1] ?? 0)));
+  return once.map((value, i) => 0.5 * (value + (once[i - 1] ?? 0)));
+}
+
 const CASES: Record<string, { rateHz: number; make: () => Float32Array[] }> = {
   song: {
     rateHz: 48000,
@@ -15,7 +21,9 @@ const CASES: Record<string, { rateHz: number; make: () => Float32Array[] }> = {
   "noise that swells": {
     rateHz: 44100,
     make: () =>
-      [3, 8].map((seed) => noise(44100 * 30, seed).map((v, i) => v * (0.02 + 0.4 * (i / (44100 * 30)) ** 2))),
+      [3, 8].map((seed) =>
+        softNoise(44100 * 30, seed).map((v, i) => v * (0.02 + 0.4 * (i / (44100 * 30)) ** 2)),
+      ),
   },
   "mono steps": {
     rateHz: 48000,
