@@ -1,4 +1,4 @@
-import { boolean, index, int, mysqlTable, text, uniqueIndex, varchar } from "drizzle-orm/mysql-core";
+import { index, int, mysqlTable, primaryKey, text, uniqueIndex, varchar } from "drizzle-orm/mysql-core";
 import { ascii, at, id, jsonOf, minor, sha256 } from "@/db/columns";
 
 export const rateCards = mysqlTable(
@@ -28,15 +28,19 @@ export const orders = mysqlTable(
     taxMinor: minor("tax_minor").notNull(),
     grossMinor: minor("gross_minor").notNull(),
     taxWords: varchar("tax_words", { length: 300 }).notNull(),
-    /** proposed, awaiting payment, paid, licensed, refused, refunded, expired */
+    /** proposed, awaiting payment, paid, licensed, refused, withdrawn */
     state: ascii(20)("state").notNull(),
     stateWords: varchar("state_words", { length: 500 }).notNull(),
     licensee: jsonOf<Record<string, unknown>>("licensee").notNull(),
     acceptance: jsonOf<Record<string, unknown> | null>("acceptance"),
+    /** Checkouts opened so far: a new one gets a new idempotency key. */
+    checkoutAttempt: int("checkout_attempt").notNull().default(0),
     checkoutSession: ascii(120)("checkout_session"),
     paymentIntent: ascii(80)("payment_intent"),
     placedBy: id("placed_by").notNull(),
     approvedBy: id("approved_by"),
+    /** Set when the records have been signed. */
+    issuedAt: at("issued_at"),
     placedAt: at("placed_at").notNull(),
     paidAt: at("paid_at"),
     version: int("version").notNull().default(1),
@@ -113,7 +117,6 @@ export const licenceRecords = mysqlTable(
     signature: ascii(200)("signature").notNull(),
     lastUseAt: at("last_use_at"),
     issuedAt: at("issued_at").notNull(),
-    disclosed: boolean("disclosed").notNull().default(true),
   },
   (table) => [
     index("licence_records_company").on(table.companyId),
@@ -127,6 +130,7 @@ export const licenceStatusEvents = mysqlTable(
   {
     id: id("id").primaryKey(),
     licenceNumber: ascii(24)("licence_number").notNull(),
+    sequence: int("sequence").notNull(),
     status: ascii(40)("status").notNull(),
     words: varchar("words", { length: 500 }).notNull(),
     effectiveAt: at("effective_at").notNull(),
@@ -134,7 +138,62 @@ export const licenceStatusEvents = mysqlTable(
     canonical: text("canonical").notNull(),
     sha256: sha256("sha256").notNull(),
   },
-  (table) => [index("licence_status_events_licence").on(table.licenceNumber, table.effectiveAt)],
+  (table) => [uniqueIndex("licence_status_events_once").on(table.licenceNumber, table.sequence)],
+);
+
+/** What a licensee keeps from the public page for now; no row: nothing. */
+export const licenceVisibility = mysqlTable("licence_visibility", {
+  licenceNumber: ascii(24)("licence_number").primaryKey(),
+  withheld: jsonOf<string[]>("withheld").notNull(),
+  changedBy: id("changed_by").notNull(),
+  changedAt: at("changed_at").notNull(),
+  version: int("version").notNull().default(1),
+});
+
+/** The one row under which places in the log are taken and days are closed. */
+export const recordLogHead = mysqlTable("record_log_head", {
+  name: ascii(10)("name").primaryKey(),
+  /** Days up to this one have their root; nothing may join them. */
+  publishedThrough: ascii(10)("published_through"),
+  version: int("version").notNull().default(1),
+});
+
+/** Leaves of the days' trees in their places, gapless within a day. */
+export const recordLog = mysqlTable(
+  "record_log",
+  {
+    day: ascii(10)("day").notNull(),
+    position: int("position").notNull(),
+    /** record or status */
+    kind: ascii(8)("kind").notNull(),
+    licenceNumber: ascii(24)("licence_number").notNull(),
+    leaf: text("leaf").notNull(),
+  },
+  (table) => [
+    primaryKey({ columns: [table.day, table.position] }),
+    index("record_log_licence").on(table.licenceNumber),
+  ],
+);
+
+/** A refund of some lines of a paid order, or of a payment that was refused a licence. */
+export const orderRefunds = mysqlTable(
+  "order_refunds",
+  {
+    id: id("id").primaryKey(),
+    orderId: id("order_id").notNull(),
+    /** Empty: the payment of an order for which nothing was issued. */
+    lineIds: jsonOf<string[]>("line_ids").notNull(),
+    amountMinor: minor("amount_minor").notNull(),
+    words: varchar("words", { length: 500 }).notNull(),
+    /** asked, done */
+    state: ascii(8)("state").notNull(),
+    paymentIntent: ascii(80)("payment_intent").notNull(),
+    processorRefund: ascii(80)("processor_refund"),
+    askedBy: id("asked_by"),
+    askedAt: at("asked_at").notNull(),
+    doneAt: at("done_at"),
+  },
+  (table) => [index("order_refunds_order").on(table.orderId)],
 );
 
 export const signingKeys = mysqlTable("signing_keys", {

@@ -29,6 +29,8 @@ export interface OpenedCheckout {
 
 export interface Payment {
   paymentId: string;
+  /** The order it was started for. */
+  orderId: string | null;
   chargeId: string;
   paidAt: Date;
   gross: Money;
@@ -99,6 +101,7 @@ function paymentOf(intent: Stripe.PaymentIntent | null): Payment | null {
   if (!isExpanded(movement)) return null;
   return {
     paymentId: intent.id,
+    orderId: intent.metadata.orderId ?? null,
     chargeId: charge.id,
     paidAt: new Date(charge.created * 1000),
     gross: moneyOf(charge.amount, charge.currency),
