@@ -8,7 +8,9 @@ export {
   setHead,
   setRecordingState,
 } from "./change-state";
+export { contoursOf } from "./contours";
 export { createLibrary } from "./create-library";
+export { type Availability, type CueCard, type CueVersion, cueCards } from "./cue-card";
 export {
   allLibraries,
   familiesByIds,
@@ -30,6 +32,7 @@ export {
   registerFamily,
   writeSplit,
 } from "./register-family";
+export { readRecordingToRender, recordMaster, recordPreview } from "./rendering/record-rendering";
 export { FamilyDescription, Section, Share } from "./schemas";
 export { searchTextOf } from "./search-text";
 export {
