@@ -1,10 +1,11 @@
-import type { Channel, Hit } from "./hits";
+import { type Channel, type Fit, type Hit, SHARE_MIN } from "./hits";
 
 export interface Thresholds {
-  /** Nats of LLR and LLR2, and share of matched landmarks, from which a hit is held. */
+  /** Nats of LLR and LLR2 from which a hit is held… */
   holdEvidence: number;
   holdEvidence2: number;
-  holdShare: number;
+  /** …if this share of landmarks coincides: the looser the fit, the more. Another take of the same notes fits loosely. */
+  holdShare: Readonly<Record<Fit, number>>;
   /** From which it is shown to a person on request. */
   weakEvidence: number;
   weakEvidence2: number;
@@ -14,7 +15,7 @@ export interface Thresholds {
 export const DEFAULT_THRESHOLDS: Readonly<Thresholds> = Object.freeze({
   holdEvidence: 100,
   holdEvidence2: 50,
-  holdShare: 0.13,
+  holdShare: SHARE_MIN,
   weakEvidence: 50,
   weakEvidence2: 8,
 });
@@ -22,11 +23,11 @@ export const DEFAULT_THRESHOLDS: Readonly<Thresholds> = Object.freeze({
 export type Band = "hold" | "weak" | "ignore";
 
 export function band(hit: Hit, thresholds: Readonly<Thresholds> = DEFAULT_THRESHOLDS): Band {
-  const { evidence, evidence2, matchedShare } = hit;
+  const { evidence, evidence2, matchedShare, fit } = hit;
   if (
     evidence >= thresholds.holdEvidence &&
     evidence2 >= thresholds.holdEvidence2 &&
-    matchedShare >= thresholds.holdShare
+    matchedShare >= thresholds.holdShare[fit]
   ) {
     return "hold";
   }

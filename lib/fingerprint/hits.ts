@@ -1,4 +1,4 @@
-import { type AffineMap, matchPeaks, type Span } from "./alignment";
+import { type AffineMap, matchPeaks, type Span, TOLERANCES } from "./alignment";
 import type { Fingerprint } from "./fingerprint";
 import type { Prepared } from "./prepared";
 import { evidenceNats } from "./score";
@@ -7,6 +7,10 @@ import { type Alignment, PASSAGE_NATS_MIN } from "./verify";
 
 export type Channel = "mid" | "left" | "right";
 export type RelationHint = "same recording" | "altered copy" | "excerpt" | "shared material";
+
+/** How closely the peaks coincide: within 16 ms, 26 ms or 37 ms. Copies are close or fair; other takes are loose. */
+export type Fit = "close" | "fair" | "loose";
+const FITS: readonly Fit[] = ["close", "fair", "loose"];
 
 /** A stretch of the query that follows the reference. `speed` and `pitchSemitones` describe the query against it. */
 export interface Passage {
@@ -30,6 +34,7 @@ export interface Hit {
   evidence2: number;
   /** Share of the query's landmarks that coincide, on the best alignment's passages. */
   matchedShare: number;
+  fit: Fit;
   /** Expected number of such hits in screening one honest recording; null until calibrated. */
   chance: number | null;
   speed: number;
@@ -55,12 +60,20 @@ const WHOLE = 0.9;
 const EDIT_MIN_S = 0.5;
 /** Repeats of one stretch of the reference no longer than this are a loop. */
 const LOOP_MAX_S = 20;
+/** Less is found between any two recordings. */
+const HIT_NATS_MIN = 25;
 /** A further alignment of the same recording must stand by itself, or chance alignments would fill the gaps. */
 const FURTHER_NATS_MIN = 35;
-const FURTHER_NATS2_MIN = 12;
+const FURTHER_NATS2_MIN = 15;
+/** Share of landmarks from which an alignment of each fit is more than a shared pulse. */
+export const SHARE_MIN: Readonly<Record<Fit, number>> = Object.freeze({
+  close: 0.13,
+  fair: 0.16,
+  loose: 0.22,
+});
 /** Of a passage already explained by a surer one, this much must be new. */
 const NEW_SHARE = 0.5;
-const NEW_MIN_S = 1;
+const NEW_MIN_S = 1.5;
 
 export function makeHit(
   id: string,
@@ -73,14 +86,10 @@ export function makeHit(
 ): Hit | null {
   const ranked = [...alignments].sort((x, y) => y.evidence - x.evidence);
   const best = ranked[0];
-  if (best === undefined) return null;
+  if (best === undefined || best.evidence < HIT_NATS_MIN) return null;
   const passages: Passage[] = [];
   for (const alignment of ranked) {
-    if (
-      alignment !== best &&
-      (alignment.evidence < FURTHER_NATS_MIN || alignment.evidence2 < FURTHER_NATS2_MIN)
-    )
-      continue;
+    if (alignment !== best && !standsAlone(alignment)) continue;
     addPassages(passages, query, reference, alignment);
   }
   if (passages.length === 0) return null;
@@ -95,6 +104,7 @@ export function makeHit(
     evidence: best.evidence,
     evidence2: best.evidence2,
     matchedShare: rate,
+    fit: fitOf(best),
     chance: null,
     speed: best.map.a,
     pitchSemitones: best.map.c === 0 ? 0 : -best.map.c,
@@ -121,6 +131,19 @@ function widen(passages: Passage[], durationS: number, referenceDurationS: numbe
     passage.endS += atEnd;
     passage.refEndS += atEnd * passage.speed;
   }
+}
+
+function standsAlone(alignment: Alignment): boolean {
+  const { evidence, evidence2, score } = alignment;
+  return (
+    evidence >= FURTHER_NATS_MIN &&
+    evidence2 >= FURTHER_NATS2_MIN &&
+    score.hits >= SHARE_MIN[fitOf(alignment)] * score.trials
+  );
+}
+
+function fitOf(alignment: Alignment): Fit {
+  return FITS[TOLERANCES.indexOf(alignment.score.tolerance)] ?? "loose";
 }
 
 function turnRound(passage: Passage, durationS: number): Passage {

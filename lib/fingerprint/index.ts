@@ -9,7 +9,7 @@ export {
   type NotComparableReason,
   type NotComparableSpan,
 } from "./fingerprint";
-export type { Channel, Hit, Passage, RelationHint } from "./hits";
+export type { Channel, Fit, Hit, Passage, RelationHint } from "./hits";
 export { mirrorFingerprint } from "./mirror";
 export { PACK_FORMAT_VERSION, packFingerprint, unpackFingerprint } from "./pack";
 export {

@@ -1,15 +1,12 @@
 import { type Candidate, cellSlot, coveredFrames, HitColumns } from "./candidates";
-import { queryPairs } from "./pairs";
+import type { Questions } from "./pairs";
 import { POSITION_UNITS_PER_FRAME } from "./postings";
-import type { Prepared } from "./prepared";
 import { blockBorders, type ReadCounts, readRarest } from "./reading";
 import { recordingAt, type Segment } from "./segment";
 
 /** Offsets are counted in cells of two frames, each with its right neighbour. */
 const CELL_FRAMES = 2;
 const TABLE_BITS = 18;
-/** Fewer aligned pairs in ten seconds are chance (see the README's arithmetic). */
-const VOTES_MIN = 4;
 const EXACT_HITS_MAX = 20_000;
 const CANDIDATES_PER_BLOCK = 12;
 
@@ -22,13 +19,13 @@ const CANDIDATES_PER_BLOCK = 12;
  */
 export function searchPairs(
   segments: Segment[],
-  query: Prepared,
-  budget: number,
+  questions: Questions,
+  lengthFrames: number,
+  options: { budget: number; votesMin: number },
   counts: ReadCounts,
   onBlock: (done: number, total: number) => void,
 ): Candidate[] {
-  const questions = queryPairs(query);
-  const borders = blockBorders(questions, query.lengthFrames);
+  const borders = blockBorders(questions, lengthFrames);
   const table = new Uint16Array(1 << TABLE_BITS);
   const hits = new HitColumns();
   const out: Candidate[] = [];
@@ -40,7 +37,7 @@ export function searchPairs(
       questions,
       borders[block]!,
       borders[block + 1]!,
-      budget,
+      options.budget,
       counts,
       (s, question, posting) => {
         const segment = segments[s]!;
@@ -51,7 +48,7 @@ export function searchPairs(
         hits.add(s, recording, questions.root[question]!, questions.timeFrames[question]!, time, 1, 0);
       },
     );
-    vote(hits, table, out);
+    vote(hits, table, options.votesMin, out);
     onBlock(block + 1, borders.length - 1);
   }
   return out;
@@ -61,7 +58,7 @@ function cellOf(hits: HitColumns, i: number): number {
   return Math.floor((hits.referenceTime[i]! - hits.queryTime[i]!) / CELL_FRAMES);
 }
 
-function vote(hits: HitColumns, table: Uint16Array, out: Candidate[]): void {
+function vote(hits: HitColumns, table: Uint16Array, votesMin: number, out: Candidate[]): void {
   table.fill(0);
   for (let i = 0; i < hits.count; i++) {
     const slot = cellSlot(hits.segment[i]!, hits.recording[i]!, cellOf(hits, i), 0, 0, TABLE_BITS);
@@ -77,15 +74,21 @@ function vote(hits: HitColumns, table: Uint16Array, out: Candidate[]): void {
     histogram[sums[i]!]!++;
   }
   let least = 1023;
-  for (let kept = 0; least > VOTES_MIN; least--) {
+  for (let kept = 0; least > votesMin; least--) {
     kept += histogram[least]!;
     if (kept + histogram[least - 1]! > EXACT_HITS_MAX) break;
   }
-  countExactly(hits, sums, least, out);
+  countExactly(hits, sums, least, votesMin, out);
 }
 
 /** Counts the cells that survived, now by their full address, and keeps the best. */
-function countExactly(hits: HitColumns, sums: Uint16Array, least: number, out: Candidate[]): void {
+function countExactly(
+  hits: HitColumns,
+  sums: Uint16Array,
+  least: number,
+  votesMin: number,
+  out: Candidate[],
+): void {
   const cells = new Map<string, Candidate & { offsets: number[]; times: number[] }>();
   for (let i = 0; i < hits.count; i++) {
     if (sums[i]! < least) continue;
@@ -112,7 +115,7 @@ function countExactly(hits: HitColumns, sums: Uint16Array, least: number, out: C
     }
   }
   const ranked = [...cells.values()]
-    .filter((cell) => cell.votes >= VOTES_MIN)
+    .filter((cell) => cell.votes >= votesMin)
     .sort((x, y) => y.votes - x.votes);
   const kept: Candidate[] = [];
   for (const { offsets, times, ...candidate } of ranked) {

@@ -1,8 +1,16 @@
 import { type AffineMap, matchPeaks, type Span, type Tolerance } from "./alignment";
 import type { Prepared } from "./prepared";
+import { FRAMES_PER_S } from "./settings";
 
 /** A passage ends where its running score has fallen this far: some 35 misses in a row of a clear copy. */
 const DROP_NATS = 30;
+/**
+ * A passage must coincide at this many moments (cells of six frames, 0.14 s) and last this long: the peaks of one chord
+ * are one event, and one chord shared with another piece, or played backwards, is no passage.
+ */
+const MOMENT_FRAMES = 6;
+const MOMENTS_MIN = 7;
+const PASSAGE_FRAMES_MIN = 1.5 * FRAMES_PER_S;
 
 /**
  * Stretches of the query that agree with the reference under a map: maximal-scoring segments over the query's peaks
@@ -26,7 +34,21 @@ export function matchingSpans(
   matchPeaks(query, reference, map, 0, query.count, tolerance, matched);
   const hit = Math.log(rate / chance);
   const miss = Math.log((1 - rate) / (1 - chance));
-  return maximalSpans(matched, hit, miss, leastNats);
+  return maximalSpans(matched, hit, miss, leastNats).filter(([from, to]) =>
+    lasts(query.timeFrames, matched, from, to),
+  );
+}
+
+function lasts(timeFrames: Float64Array, matched: Int32Array, from: number, to: number): boolean {
+  if (timeFrames[to - 1]! - timeFrames[from]! < PASSAGE_FRAMES_MIN) return false;
+  let moments = 0;
+  let last = Number.NEGATIVE_INFINITY;
+  for (let i = from; i < to; i++) {
+    if (matched[i]! < 0 || timeFrames[i]! - last < MOMENT_FRAMES) continue;
+    moments++;
+    last = timeFrames[i]!;
+  }
+  return moments >= MOMENTS_MIN;
 }
 
 /** The scan itself over −2 (outside), −1 (miss) and hits. */

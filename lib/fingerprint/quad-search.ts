@@ -18,7 +18,6 @@ const NEAR_FRAMES = 40;
 const NEAR_LN_SPEED = 0.04;
 const NEAR_SEMITONES = 0.8;
 const TABLE_BITS = 19;
-const VOTES_MIN = 4;
 const EXACT_HITS_MAX = 20_000;
 const CANDIDATES_PER_WINDOW = 10;
 
@@ -34,7 +33,7 @@ export function searchQuads(
   segments: Segment[],
   query: Prepared,
   density: QuadDensity,
-  budget: number,
+  options: { budget: number; votesMin: number },
   counts: ReadCounts,
   onBlock: (done: number, total: number) => void,
 ): Candidate[] {
@@ -55,7 +54,7 @@ export function searchQuads(
       questions,
       borders[block]!,
       borders[block + 1]!,
-      budget,
+      options.budget,
       counts,
       (s, question, posting) => {
         const segment = segments[s]!;
@@ -82,7 +81,7 @@ export function searchQuads(
       const fromFrames = Math.max(0, block - 1) * BLOCK_FRAMES;
       const toFrames = (block + 1) * BLOCK_FRAMES;
       const hits = blocks === 1 ? [current] : [before, current];
-      voteWindow(hits, roots, votes, fromFrames, toFrames, out);
+      voteWindow(hits, roots, votes, fromFrames, toFrames, options.votesMin, out);
     }
     onBlock(block + 1, blocks);
   }
@@ -115,6 +114,7 @@ function voteWindow(
   votes: Uint16Array,
   fromFrames: number,
   toFrames: number,
+  votesMin: number,
   out: Candidate[],
 ): void {
   const middle = (fromFrames + toFrames) / 2;
@@ -139,11 +139,11 @@ function voteWindow(
       }
     }
   }
-  const cells = strongCells(windows, votes, middle);
+  const cells = strongCells(windows, votes, middle, votesMin);
   const ranked = [...cells.values()].sort((p, q) => q.length - p.length).slice(0, 3 * CANDIDATES_PER_WINDOW);
   const found: Candidate[] = [];
   for (const members of ranked) {
-    const candidate = settle(members, middle);
+    const candidate = settle(members, middle, votesMin);
     if (candidate !== null) found.push(candidate);
   }
   found.sort((p, q) => q.votes - p.votes);
@@ -161,7 +161,12 @@ interface QuadHit {
 }
 
 /** Members of the cells with most votes, by full address: the table's counters may be shared, these are not. */
-function strongCells(windows: HitColumns[], votes: Uint16Array, middle: number): Map<string, QuadHit[]> {
+function strongCells(
+  windows: HitColumns[],
+  votes: Uint16Array,
+  middle: number,
+  votesMin: number,
+): Map<string, QuadHit[]> {
   const histogram = new Uint32Array(1024);
   const best = windows.map((hits) => new Uint16Array(hits.count));
   const bestMask = windows.map((hits) => new Uint8Array(hits.count));
@@ -187,7 +192,7 @@ function strongCells(windows: HitColumns[], votes: Uint16Array, middle: number):
     }
   }
   let least = 1023;
-  for (let kept = 0; least > VOTES_MIN; least--) {
+  for (let kept = 0; least > votesMin; least--) {
     kept += histogram[least]!;
     if (kept + histogram[least - 1]! > EXACT_HITS_MAX) break;
   }
@@ -225,7 +230,7 @@ function median(values: number[]): number {
 }
 
 /** Gathers a cell's hits around their median, counts distinct roots and lays a line through them. */
-function settle(members: QuadHit[], middle: number): Candidate | null {
+function settle(members: QuadHit[], middle: number, votesMin: number): Candidate | null {
   const at = (hit: QuadHit): number => hit.referenceTime + hit.speed * (middle - hit.queryTime);
   const time = median(members.map(at));
   const lnSpeed = median(members.map((hit) => Math.log(hit.speed)));
@@ -237,7 +242,7 @@ function settle(members: QuadHit[], middle: number): Candidate | null {
       Math.abs(hit.pitch - pitch) <= NEAR_SEMITONES,
   );
   const votes = new Set(near.map((hit) => hit.root)).size;
-  if (votes < VOTES_MIN) return null;
+  if (votes < votesMin) return null;
   const a = theilSen(near, Math.exp(lnSpeed));
   const b = median(near.map((hit) => hit.referenceTime - a * hit.queryTime));
   const c = median(near.map((hit) => hit.pitch));

@@ -4,6 +4,7 @@ import { comparability, type Fingerprint } from "./fingerprint";
 import { type Hit, makeHit } from "./hits";
 import { mirrorFingerprint } from "./mirror";
 import { searchPairs } from "./pair-search";
+import { queryPairs } from "./pairs";
 import { prepare } from "./prepared";
 import { searchQuads } from "./quad-search";
 import { DENSE, FAST } from "./quads";
@@ -26,6 +27,8 @@ export interface SearchOptions {
   reversed?: boolean;
   /** Postings read per ten seconds of query, for each of the two searches. */
   budget?: { pairs?: number; quads?: number };
+  /** Votes from which a place becomes a candidate; the acceptance is another threshold (`band`). */
+  candidateVotes?: number;
   exclude?: Iterable<string>;
   /** At most this many hits. */
   limit?: number;
@@ -61,6 +64,8 @@ export interface SearchIndex {
   ): Promise<Hit[]>;
 }
 
+/** Fewer landmarks that agree within ten seconds are chance. */
+const CANDIDATE_VOTES = 4;
 const PAIR_BUDGET = 400_000;
 const QUAD_BUDGET_FAST = 80_000;
 const QUAD_BUDGET_DENSE = 400_000;
@@ -172,11 +177,14 @@ class MemoryIndex implements SearchIndex {
     const passes = (options.altered ? 2 : 1) * (options.reversed ? 2 : 1);
     let pass = reversed ? passes / 2 : 0;
     const onBlock = (done: number, total: number): void => options.onProgress?.(pass + done / total, passes);
-    const candidates = searchPairs(segments, query, options.budget?.pairs ?? PAIR_BUDGET, counts, onBlock);
+    const votesMin = options.candidateVotes ?? CANDIDATE_VOTES;
+    const pairs = { budget: options.budget?.pairs ?? PAIR_BUDGET, votesMin };
+    const candidates = searchPairs(segments, queryPairs(query), query.lengthFrames, pairs, counts, onBlock);
     if (options.altered) {
       pass++;
       const budget = options.budget?.quads ?? (options.dense ? QUAD_BUDGET_DENSE : QUAD_BUDGET_FAST);
-      candidates.push(...searchQuads(segments, query, options.dense ? DENSE : FAST, budget, counts, onBlock));
+      const density = options.dense ? DENSE : FAST;
+      candidates.push(...searchQuads(segments, query, density, { budget, votesMin }, counts, onBlock));
     }
     const hits: Hit[] = [];
     for (const [id, own] of groupByRecording(
