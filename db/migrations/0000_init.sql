@@ -431,7 +431,8 @@ CREATE TABLE `ledger_accounts` (
 	`currency` varchar(3) character set ascii collate ascii_bin NOT NULL,
 	`version` int NOT NULL DEFAULT 1,
 	CONSTRAINT `ledger_accounts_id` PRIMARY KEY(`id`),
-	CONSTRAINT `ledger_accounts_once` UNIQUE(`kind`,`holder_id`,`currency`)
+	CONSTRAINT `ledger_accounts_once` UNIQUE(`kind`,`holder_id`,`currency`),
+	CONSTRAINT `ledger_accounts_currency` UNIQUE(`id`,`currency`)
 );
 --> statement-breakpoint
 CREATE TABLE `ledger_entries` (
@@ -451,7 +452,8 @@ CREATE TABLE `ledger_entries` (
 	`event_at` datetime(3) NOT NULL,
 	`posted_at` datetime(3) NOT NULL,
 	CONSTRAINT `ledger_entries_id` PRIMARY KEY(`id`),
-	CONSTRAINT `ledger_entries_key` UNIQUE(`idempotency_key`)
+	CONSTRAINT `ledger_entries_key` UNIQUE(`idempotency_key`),
+	CONSTRAINT `ledger_entries_currency` UNIQUE(`id`,`currency`)
 );
 --> statement-breakpoint
 CREATE TABLE `ledger_transfers` (
@@ -635,6 +637,7 @@ CREATE TABLE `order_refunds` (
 	`amount_minor` bigint NOT NULL,
 	`words` varchar(500) NOT NULL,
 	`state` varchar(8) character set ascii collate ascii_bin NOT NULL,
+	`payment_intent` varchar(80) character set ascii collate ascii_bin NOT NULL,
 	`processor_refund` varchar(80) character set ascii collate ascii_bin,
 	`asked_by` varchar(40) character set ascii collate ascii_bin,
 	`asked_at` datetime(3) NOT NULL,
@@ -662,6 +665,7 @@ CREATE TABLE `orders` (
 	`payment_intent` varchar(80) character set ascii collate ascii_bin,
 	`placed_by` varchar(40) character set ascii collate ascii_bin NOT NULL,
 	`approved_by` varchar(40) character set ascii collate ascii_bin,
+	`issued_at` datetime(3),
 	`placed_at` datetime(3) NOT NULL,
 	`paid_at` datetime(3),
 	`version` int NOT NULL DEFAULT 1,
@@ -1057,6 +1061,9 @@ CREATE TABLE `shared_loops` (
 	CONSTRAINT `shared_loops_code` UNIQUE(`code`)
 );
 --> statement-breakpoint
+ALTER TABLE `ledger_transfers` ADD CONSTRAINT `ledger_transfers_entry_currency` FOREIGN KEY (`entry_id`,`currency`) REFERENCES `ledger_entries`(`id`,`currency`) ON DELETE no action ON UPDATE no action;--> statement-breakpoint
+ALTER TABLE `ledger_transfers` ADD CONSTRAINT `ledger_transfers_debit_currency` FOREIGN KEY (`debit_account_id`,`currency`) REFERENCES `ledger_accounts`(`id`,`currency`) ON DELETE no action ON UPDATE no action;--> statement-breakpoint
+ALTER TABLE `ledger_transfers` ADD CONSTRAINT `ledger_transfers_credit_currency` FOREIGN KEY (`credit_account_id`,`currency`) REFERENCES `ledger_accounts`(`id`,`currency`) ON DELETE no action ON UPDATE no action;--> statement-breakpoint
 CREATE INDEX `memberships_person` ON `memberships` (`person_id`);--> statement-breakpoint
 CREATE INDEX `memberships_library` ON `memberships` (`library_id`,`role`);--> statement-breakpoint
 CREATE INDEX `catalogue_events_family` ON `catalogue_events` (`family_id`,`happened_at`);--> statement-breakpoint

@@ -1,5 +1,5 @@
 import { sql } from "drizzle-orm";
-import { check, index, int, mysqlTable, uniqueIndex, varchar } from "drizzle-orm/mysql-core";
+import { check, foreignKey, index, int, mysqlTable, uniqueIndex, varchar } from "drizzle-orm/mysql-core";
 import { ascii, at, id, jsonOf, minor, sha256 } from "@/db/columns";
 
 export const ledgerAccounts = mysqlTable(
@@ -14,7 +14,10 @@ export const ledgerAccounts = mysqlTable(
     /** Raised with every posting that touches an account which may not go negative. */
     version: int("version").notNull().default(1),
   },
-  (table) => [uniqueIndex("ledger_accounts_once").on(table.kind, table.holderId, table.currency)],
+  (table) => [
+    uniqueIndex("ledger_accounts_once").on(table.kind, table.holderId, table.currency),
+    uniqueIndex("ledger_accounts_currency").on(table.id, table.currency),
+  ],
 );
 
 export const ledgerEntries = mysqlTable(
@@ -40,6 +43,7 @@ export const ledgerEntries = mysqlTable(
     postedAt: at("posted_at").notNull(),
   },
   (table) => [
+    uniqueIndex("ledger_entries_currency").on(table.id, table.currency),
     index("ledger_entries_posted").on(table.postedAt),
     index("ledger_entries_library").on(table.libraryId, table.postedAt),
     index("ledger_entries_order").on(table.orderId),
@@ -71,6 +75,22 @@ export const ledgerTransfers = mysqlTable(
     index("ledger_transfers_debit").on(table.debitAccountId),
     index("ledger_transfers_credit").on(table.creditAccountId),
     index("ledger_transfers_line").on(table.orderLineId),
+    // A transfer, its entry and both its accounts have one currency, and the database says so.
+    foreignKey({
+      name: "ledger_transfers_entry_currency",
+      columns: [table.entryId, table.currency],
+      foreignColumns: [ledgerEntries.id, ledgerEntries.currency],
+    }),
+    foreignKey({
+      name: "ledger_transfers_debit_currency",
+      columns: [table.debitAccountId, table.currency],
+      foreignColumns: [ledgerAccounts.id, ledgerAccounts.currency],
+    }),
+    foreignKey({
+      name: "ledger_transfers_credit_currency",
+      columns: [table.creditAccountId, table.currency],
+      foreignColumns: [ledgerAccounts.id, ledgerAccounts.currency],
+    }),
     check("ledger_transfers_positive", sql`${table.amountMinor} > 0`),
     check("ledger_transfers_two", sql`${table.debitAccountId} <> ${table.creditAccountId}`),
   ],

@@ -45,8 +45,11 @@ export interface PostedEntry {
 }
 
 const WORDS_MAX = 300;
-/** Codes that spend what somebody is owed: never more than there is. */
-const COVERED: readonly EntryCode[] = ["payout", "recoupment"];
+/**
+ * Codes that spend what somebody is owed: never more than there is. A payout reserves its amount under the same lock before
+ * the money leaves, and is posted as it happened.
+ */
+const COVERED: readonly EntryCode[] = ["recoupment"];
 
 function contentOf(entry: EntryToPost): string {
   const { code, currency, libraryId = null, orderId = null, reverses = null } = entry;
