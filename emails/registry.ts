@@ -1,6 +1,7 @@
 import { answerReceived } from "./answer-received";
 import { bankChangeNotice } from "./bank-change-notice";
 import { coWriterAccepted } from "./co-writer-accepted";
+import { coWriterNotAccepted } from "./co-writer-not-accepted";
 import { deliveryListed } from "./delivery-listed";
 import { deliveryReceipt } from "./delivery-receipt";
 import { findingStatement } from "./finding-statement";
@@ -21,6 +22,7 @@ export const mailTemplates = {
   "answer-received": answerReceived,
   "bank-change-notice": bankChangeNotice,
   "co-writer-accepted": coWriterAccepted,
+  "co-writer-not-accepted": coWriterNotAccepted,
   "delivery-listed": deliveryListed,
   "delivery-receipt": deliveryReceipt,
   "finding-statement": findingStatement,

@@ -90,7 +90,7 @@ export const deliveryWriters = mysqlTable(
     ipi: ascii(11)("ipi"),
     role: ascii(4)("role").notNull(),
     shareBps: int("share_bps").notNull(),
-    /** asked, accepted, declined */
+    /** asked, accepted, declined, lapsed */
     state: ascii(10)("state").notNull(),
     askedAt: at("asked_at"),
     answeredAt: at("answered_at"),

@@ -10,6 +10,7 @@ import { NotFound, Precondition } from "@/lib/kernel/errors";
 import { command } from "@/lib/kernel/verb";
 import { enqueueMail } from "@/lib/mail";
 import { writeDeliveryEvent } from "./own-delivery";
+import { tellDeliverer } from "./remind-writers";
 
 /** A writer answers for their own share, from their own account, whatever role they are using. */
 export const answerSplit = command({
@@ -38,7 +39,9 @@ export const answerSplit = command({
       throw new Precondition(
         own.state === "accepted"
           ? "You have accepted these shares already."
-          : "You have declined these shares already.",
+          : own.state === "declined"
+            ? "You have declined these shares already."
+            : "The time to answer is over; the deliverer may ask you again.",
       );
     await tx
       .update(deliveryWriters)
@@ -76,6 +79,7 @@ export const answerSplit = command({
         },
       });
     }
+    if (!input.accept) await tellDeliverer(tx, { delivery, writerName: own.name, answer: "declined" });
     return { complete };
   },
   audit: ({ subject, input }) => ({

@@ -1,13 +1,22 @@
-import { and, eq, isNull, max } from "drizzle-orm";
+import { and, eq, inArray, isNull, max } from "drizzle-orm";
 import { z } from "zod";
+import type { Tx } from "@/db/client";
 import { deliveries, deliveryVersions } from "@/db/schema/deliveries";
+import { confirmedName, peopleByIds } from "@/lib/accounts";
 import { findVersionRole } from "@/lib/catalogue/version-roles";
 import { enqueue } from "@/lib/jobs";
 import { Invalid, NotFound, Precondition } from "@/lib/kernel/errors";
 import { newId } from "@/lib/kernel/ids";
 import { command, open } from "@/lib/kernel/verb";
 import { guessRole } from "./guess-role";
-import { DELIVERERS, lockOwnDelivery, ownDelivery, requireDraft, writeDeliveryEvent } from "./own-delivery";
+import {
+  DELIVERERS,
+  type Deliverer,
+  lockOwnDelivery,
+  ownDelivery,
+  requireDraft,
+  writeDeliveryEvent,
+} from "./own-delivery";
 import { DeliveryDraft, IsrcField } from "./schemas";
 
 export const startDelivery = command({
@@ -17,13 +26,14 @@ export const startDelivery = command({
   authorise: open("whoever delivers for a library may start a draft in it"),
   run: async ({ tx, actor, input, now }) => {
     const deliveryId = newId("del");
+    const writers = await firstWriter(tx, actor);
     await tx.insert(deliveries).values({
       id: deliveryId,
       libraryId: actor.libraryId,
       delivererId: actor.personId,
       delivererKind: actor.kind,
       title: input.title,
-      draft: input.title ? { title: input.title } : {},
+      draft: { ...(input.title ? { title: input.title } : {}), ...(writers ? { writers } : {}) },
       state: "draft",
       createdAt: now,
       updatedAt: now,
@@ -32,6 +42,22 @@ export const startDelivery = command({
   },
   audit: ({ actor, result }) => ({ subject: result.deliveryId, libraryId: actor.libraryId }),
 });
+
+/** A composer stands in the table of writers from the start, with the name and IPI that the library has confirmed. */
+async function firstWriter(tx: Tx, actor: Deliverer) {
+  if (actor.kind !== "composer") return null;
+  const person = (await peopleByIds(tx, [actor.personId])).get(actor.personId);
+  const confirmed = await confirmedName(tx, actor.libraryId, actor.personId);
+  return [
+    {
+      name: confirmed?.creditName ?? actor.name,
+      email: person?.email ?? "",
+      ipi: confirmed?.ipi ?? "",
+      role: "C",
+      share: "100.00",
+    },
+  ];
+}
 
 /** Keeps the form as far as it is filled in. Nothing is judged yet. */
 export const saveDraft = command({
@@ -47,6 +73,8 @@ export const saveDraft = command({
     const draft = { ...subject.draft, ...input.draft };
     const title = typeof draft.title === "string" ? draft.title.trim().slice(0, 200) : subject.title;
     await tx.update(deliveries).set({ draft, title, updatedAt: now }).where(eq(deliveries.id, subject.id));
+    const judgedBy = ["ending", "genre"] as const;
+    if (judgedBy.some((field) => draft[field] !== subject.draft[field])) await judgeAgain(tx, subject.id);
     return { savedAt: now };
   },
   audit: ({ subject, input }) => ({
@@ -55,6 +83,21 @@ export const saveDraft = command({
     detail: { fields: Object.keys(input.draft) },
   }),
 });
+
+/** Some checks depend on what is declared of the ending and the genre; the files themselves are measured already. */
+async function judgeAgain(tx: Tx, deliveryId: string): Promise<void> {
+  const measured = await tx
+    .select({ id: deliveryVersions.id })
+    .from(deliveryVersions)
+    .where(
+      and(
+        eq(deliveryVersions.deliveryId, deliveryId),
+        isNull(deliveryVersions.replacedBy),
+        inArray(deliveryVersions.state, ["measured", "returned"]),
+      ),
+    );
+  for (const { id } of measured) await enqueue(tx, "delivery.measure", { versionId: id }, { priority: 10 });
+}
 
 /** Asked before an upload starts: is this delivery theirs to add files to? */
 export const admitUpload = command({
@@ -67,7 +110,7 @@ export const admitUpload = command({
     return delivery;
   },
   run: async ({ tx, input, subject }) => {
-    if (!["draft", "delivered", "listed"].includes(subject.state))
+    if (!["draft", "delivered", "listed", "returned"].includes(subject.state))
       throw new Precondition("This delivery is closed; start a new one.");
     const rows = await tx
       .select({ id: deliveryVersions.id })

@@ -1,9 +1,11 @@
 export { afterScreening, declarationsOf, deliveryOfFamily } from "./after-screening";
 export { answerSplit } from "./answer-split";
 export { applyFinding, type FindingEffect } from "./apply-finding";
+export { askWriterAgain, handInAgain } from "./ask-again";
 export { admitUpload, fileArrived, removeVersion, saveDraft, setVersion, startDelivery } from "./draft";
 export { acceptEditorial, returnEditorial } from "./editorial";
 export { guessRole } from "./guess-role";
+export { paperArrived, paperOfDelivery, readPaper } from "./papers";
 export {
   type DeliverySummary,
   type DeliveryView,
@@ -13,6 +15,7 @@ export {
   type VersionView,
 } from "./reads";
 export { readVersionToMeasure, recordMeasurement, recordUnreadable } from "./record-measurement";
+export { findUnanswered, remindWriters } from "./remind-writers";
 export { Declaration, DeliveryDraft, DeliveryForm, type DeliveryFormInput, SampleDeclared } from "./schemas";
 export { signDelivery } from "./sign-delivery";
 export { standingOf } from "./standing";

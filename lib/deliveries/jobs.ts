@@ -2,6 +2,7 @@ import { defineHandlers } from "@/lib/jobs";
 import { system } from "@/lib/kernel/actor";
 import { afterScreening } from "./after-screening";
 import { measureVersion } from "./measuring/measure-version";
+import { findUnanswered, remindWriters } from "./remind-writers";
 import { tryListing } from "./try-listing";
 
 const actor = system("deliveries");
@@ -16,6 +17,13 @@ export const deliveriesHandlers = defineHandlers({
     timeoutS: 60,
     handle: async ({ recordingId, runId }) => {
       await afterScreening(actor, { recordingId }, { operationId: `screened:${runId}` });
+    },
+  },
+  "delivery.remindWriters": {
+    timeoutS: 300,
+    handle: async ({ slot }) => {
+      for (const deliveryId of await findUnanswered(actor, {}))
+        await remindWriters(actor, { deliveryId }, { operationId: `remind:${slot}:${deliveryId}` });
     },
   },
   "delivery.tryListing": {

@@ -16,6 +16,7 @@ import { NotFound } from "@/lib/kernel/errors";
 import { open, query } from "@/lib/kernel/verb";
 import { certificateOf, hitsOf } from "@/lib/screening";
 import { DELIVERERS, type DeliveryRow, maySee } from "./own-delivery";
+import { papersOfDelivery } from "./papers";
 import { type Standing, standingOf } from "./standing";
 
 export interface DeliverySummary {
@@ -56,9 +57,17 @@ export const listDeliveries = query({
       reader,
       rows.map((row) => row.id),
     );
+    const unsettled = await unsettledWriters(
+      reader,
+      rows.map((row) => row.id),
+    );
     return rows.map((row) => {
       const own = versions.filter((version) => version.deliveryId === row.id);
-      const { standing, words } = standingOf(row, own);
+      const { standing, words } = standingOf(
+        row,
+        own,
+        unsettled.filter((writer) => writer.deliveryId === row.id),
+      );
       return {
         id: row.id,
         title: row.title || "Untitled draft",
@@ -74,6 +83,23 @@ export const listDeliveries = query({
     });
   },
 });
+
+async function unsettledWriters(reader: Reader, deliveryIds: readonly string[]) {
+  if (deliveryIds.length === 0) return [];
+  return reader
+    .select({
+      deliveryId: deliveryWriters.deliveryId,
+      state: deliveryWriters.state,
+      name: deliveryWriters.name,
+    })
+    .from(deliveryWriters)
+    .where(
+      and(
+        inArray(deliveryWriters.deliveryId, [...deliveryIds]),
+        inArray(deliveryWriters.state, ["declined", "lapsed"]),
+      ),
+    );
+}
 
 async function versionsOf(reader: Reader, deliveryIds: readonly string[]) {
   if (deliveryIds.length === 0) return [];
@@ -140,9 +166,11 @@ export const getDelivery = query({
       id: delivery.id,
       title: delivery.title || "Untitled draft",
       state: delivery.state,
-      ...standingOf(delivery, versions),
+      ...standingOf(delivery, versions, writers),
       draft: delivery.draft,
       isDeliverer: delivery.delivererId === actor.personId,
+      /** Papers are for who handed them in and for the library, not for every writer. */
+      papers: maySee(actor, delivery) ? await papersOfDelivery(reader, delivery.id) : [],
       mayJudge:
         (actor.kind === "owner" || (actor.kind === "staff" && actor.granted.includes("editorial"))) &&
         actor.libraryId === delivery.libraryId,
@@ -160,6 +188,7 @@ export const getDelivery = query({
         role: writer.role,
         shareBps: writer.shareBps,
         state: writer.state,
+        askedAt: writer.askedAt,
         answeredAt: writer.answeredAt,
         answerUntil: writer.answerUntil,
         isYou: writer.personId === actor.personId,

@@ -1,4 +1,4 @@
-import { eq } from "drizzle-orm";
+import { and, eq, isNull, lt } from "drizzle-orm";
 import { z } from "zod";
 import { deliveries, deliveryVersions } from "@/db/schema/deliveries";
 import { familiesByIds, recordingsBySha256, splitsNow } from "@/lib/catalogue";
@@ -78,7 +78,9 @@ export const recordMeasurement = command({
   }),
   authorise: lockVersion,
   run: async ({ tx, input, subject: { delivery, version }, now }) => {
-    const earlier = await deliveredBefore(tx, delivery.delivererId, input.sha256, version.recordingId);
+    const earlier =
+      (await deliveredBefore(tx, delivery.delivererId, input.sha256, version.recordingId)) ??
+      (await besideItself(tx, delivery.id, version, input.sha256));
     const returns = input.checks.filter((check) => check.verdict === "return");
     const returned = earlier !== null || returns.length > 0;
     const words = earlier
@@ -152,6 +154,27 @@ export const recordUnreadable = command({
     detail: { versionId: input.versionId },
   }),
 });
+
+/** The name of another file of this delivery with the same bytes. */
+async function besideItself(
+  tx: Parameters<typeof lockOwnDelivery>[0],
+  deliveryId: string,
+  version: { id: string; position: number },
+  sha256: string,
+): Promise<string | null> {
+  const same = await tx
+    .select({ id: deliveryVersions.id, fileName: deliveryVersions.fileName })
+    .from(deliveryVersions)
+    .where(
+      and(
+        eq(deliveryVersions.deliveryId, deliveryId),
+        eq(deliveryVersions.sha256, sha256),
+        isNull(deliveryVersions.replacedBy),
+        lt(deliveryVersions.position, version.position),
+      ),
+    );
+  return same[0]?.fileName ?? null;
+}
 
 /** Title under which the same writer already delivered exactly these bytes, in any library. */
 async function deliveredBefore(

@@ -207,11 +207,7 @@ async function resolveWriters(
 ): Promise<ResolvedWriter[]> {
   const writers: ResolvedWriter[] = [];
   for (const writer of form.writers) {
-    const known = await writerOnRoster(tx, {
-      libraryId: delivery.libraryId,
-      ipi: writer.ipi ?? undefined,
-      email: writer.email ?? undefined,
-    });
+    const known = await knownWriter(tx, delivery.libraryId, writer);
     const isDeliverer = known?.personId === delivery.delivererId;
     writers.push({
       ...writer,
@@ -222,6 +218,17 @@ async function resolveWriters(
     });
   }
   return writers;
+}
+
+async function knownWriter(tx: Tx, libraryId: string, writer: DeliveryForm["writers"][number]) {
+  const byIpi = writer.ipi ? await writerOnRoster(tx, { libraryId, ipi: writer.ipi }) : null;
+  const known = byIpi ?? (writer.email ? await writerOnRoster(tx, { libraryId, email: writer.email }) : null);
+  if (writer.ipi && known?.confirmed?.ipi && known.confirmed.ipi !== writer.ipi)
+    throw new Invalid(
+      `${writer.name}: this address belongs to a writer whose confirmed IPI is another one (M02). Correct the IPI or the address.`,
+      { writers: "IPI and address belong to two people" },
+    );
+  return known;
 }
 
 function sharesOf(form: DeliveryForm, writers: readonly ResolvedWriter[]): Share[] {

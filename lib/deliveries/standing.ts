@@ -20,6 +20,7 @@ const standingOfVersion: Record<string, Standing> = {
 export function standingOf(
   delivery: Pick<DeliveryRow, "state" | "writersAcceptedAt" | "editorialAcceptedAt">,
   versions: readonly { state: string; versionRole: string }[],
+  writers: readonly { state: string; name: string }[] = [],
 ): { standing: Standing | null; words: string } {
   if (delivery.state === "draft") return { standing: null, words: draftWords(versions) };
   if (delivery.state === "refused")
@@ -31,6 +32,15 @@ export function standingOf(
     };
   const standings = versions.map((version) => standingOfVersion[version.state] ?? "working");
   const worst = STANDINGS.find((standing) => standings.includes(standing)) ?? "clear";
+  const missing = writers.find((writer) => writer.state === "declined" || writer.state === "lapsed");
+  if (missing && STANDINGS.indexOf(worst) > STANDINGS.indexOf("needs you"))
+    return {
+      standing: "needs you",
+      words:
+        missing.state === "declined"
+          ? `${missing.name} declined the shares. Agree on them, then ask again.`
+          : `${missing.name} did not answer in time. Ask again when you have spoken.`,
+    };
   if (worst !== "clear") return { standing: worst, words: sentence(worst, versions) };
   if (delivery.state === "listed") return { standing: "clear", words: "It is listed." };
   const waiting = [

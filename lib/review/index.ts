@@ -5,6 +5,7 @@ export { hearPassage, readListeningSubject, recordListening } from "./listening"
 export { openCase } from "./open-case";
 export { answerQuestion, askComposer } from "./question";
 export { listCases, type QueueRow } from "./queue";
+export { readCasePaper } from "./read-paper";
 export { confirmFinding, RecordFinding, recordFinding } from "./record-finding";
 export {
   type CaseState,

@@ -3,10 +3,10 @@ import { z } from "zod";
 import { caseMessages, cases } from "@/db/schema/review";
 import { peopleByIds } from "@/lib/accounts";
 import { familyById } from "@/lib/catalogue";
-import { deliveryOfFamily } from "@/lib/deliveries";
+import { deliveryOfFamily, paperOfDelivery } from "@/lib/deliveries";
 import { addBusinessDays, addDays, civilDateIn, endOfDay } from "@/lib/kernel/calendar";
 import { env } from "@/lib/kernel/env";
-import { NotFound, Precondition } from "@/lib/kernel/errors";
+import { Invalid, NotFound, Precondition } from "@/lib/kernel/errors";
 import { UK_HOLIDAYS } from "@/lib/kernel/holidays";
 import { newId } from "@/lib/kernel/ids";
 import { command } from "@/lib/kernel/verb";
@@ -108,6 +108,10 @@ export const answerQuestion = command({
     return row;
   },
   run: async ({ tx, actor, input, subject, now }) => {
+    if (input.fileKey && !(await paperOfDelivery(tx, input.deliveryId, input.fileKey)))
+      throw new Invalid("That file is not among this delivery's papers; please send it again.", {
+        fileKey: "not among the papers",
+      });
     await tx.insert(caseMessages).values({
       id: newId("msg"),
       caseId: subject.id,

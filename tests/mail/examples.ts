@@ -37,6 +37,10 @@ export const examples: { [N in MailName]: MailProps<N>[] } = {
       zone,
     },
   ],
+  "co-writer-not-accepted": [
+    { title: "Lantern Steps", writerName: "Dov Marchetti-Ruane", answer: "declined", url },
+    { title: "Lantern Steps", writerName: "Dov Marchetti-Ruane", answer: "no answer", url },
+  ],
   "delivery-listed": [
     {
       title: "Lantern Steps",
