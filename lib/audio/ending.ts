@@ -89,8 +89,8 @@ function findHits(attackDb: readonly number[], floorDb: number): number[] {
 function fades(levelDb: readonly number[], hits: readonly number[]): boolean {
   const coarse: number[] = [];
   for (let i = 0; i + 25 <= levelDb.length; i += 25) {
-    // The loudest tenth of a second in each quarter second: rests between notes are no fade.
-    coarse.push(Math.max(...levelDb.slice(i, i + 25)));
+    // The loudest moment of the last second: rests and soft beats between loud ones are no fade.
+    coarse.push(Math.max(...levelDb.slice(Math.max(0, i - 75), i + 25)));
   }
   const reference = [...coarse].sort((a, b) => a - b)[Math.floor(coarse.length * 0.75)] ?? -120;
   let end = coarse.length - 1;

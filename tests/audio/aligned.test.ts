@@ -8,9 +8,9 @@ import { CHORDS, song } from "./signals";
 const folder = tempFolder();
 const at = (name: string): string => join(folder, name);
 const RATE = 48000;
-const SECONDS = 24;
-const START = 4;
-const END = 20;
+const SECONDS = 16;
+const START = 3;
+const END = 13;
 
 const ratioOf = (semitones: number): number => 2 ** (semitones / 12);
 
@@ -113,7 +113,9 @@ describe("renderAligned", () => {
     expect(made).toMatchObject({ startA: START, durationS: END - START, method: "unaltered" });
     for (const channel of channels) {
       expect(Math.max(...channel.subarray(0, 480).map(Math.abs))).toBeLessThan(0.01);
-      expect(Math.max(...channel.map(Math.abs))).toBeLessThanOrEqual(10 ** (-1 / 20));
+      expect(channel.reduce((most, v) => Math.max(most, Math.abs(v)), 0)).toBeLessThanOrEqual(
+        10 ** (-1 / 20),
+      );
     }
   });
 
