@@ -14,6 +14,7 @@ export { type Availability, type CueCard, type CueVersion, cueCards } from "./cu
 export {
   allLibraries,
   familiesByIds,
+  familyByCatalogueNumber,
   familyById,
   libraryByCode,
   libraryById,
@@ -24,6 +25,7 @@ export {
   splitAt,
   splitsNow,
 } from "./for-rooms";
+export { licensedMastersOf, lockLibrary } from "./for-sales";
 export {
   acceptShare,
   type FamilyRegistration,
