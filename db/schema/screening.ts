@@ -64,7 +64,7 @@ export const screeningRuns = mysqlTable(
     seqAdmitted: int("seq_admitted").notNull(),
     recordingsCompared: int("recordings_compared").notNull(),
     hoursCompared: double("hours_compared").notNull(),
-    thresholds: jsonOf<Record<string, number>>("thresholds").notNull(),
+    thresholds: jsonOf<Record<string, unknown>>("thresholds").notNull(),
     /** clear, explained, held, not comparable */
     outcome: ascii(16)("outcome").notNull(),
     outcomeWords: varchar("outcome_words", { length: 500 }).notNull(),

@@ -108,3 +108,8 @@ export async function splitsNow(reader: Reader, familyIds: readonly string[]) {
   }
   return byFamily;
 }
+
+export async function familyByCatalogueNumber(reader: Reader, catalogueNumber: string) {
+  const [row] = await reader.select().from(families).where(eq(families.catalogueNumber, catalogueNumber));
+  return row ?? null;
+}

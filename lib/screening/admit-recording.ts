@@ -39,7 +39,7 @@ const AdmitRecording = z.object({
   seqSearched: z.int().min(0),
   recordingsCompared: z.int().min(0),
   hoursCompared: z.number().min(0),
-  thresholds: z.record(z.string(), z.number()),
+  thresholds: z.record(z.string(), z.unknown()),
   found: z.array(FoundHit),
   startedAt: z.date(),
 });

@@ -14,7 +14,7 @@ export function certificateBody(args: {
     seqAdmitted: number;
     recordingsCompared: number;
     hoursCompared: number;
-    thresholds: Record<string, number>;
+    thresholds: Record<string, unknown>;
     outcome: string;
     outcomeWords: string;
     finishedAt: Date;

@@ -1,0 +1,158 @@
+import { asc, desc, eq } from "drizzle-orm";
+import { z } from "zod";
+import { noticeEvents, notices, reportedWorks } from "@/db/schema/reports";
+import { familyById } from "@/lib/catalogue";
+import { EVERYONE } from "@/lib/kernel/actor";
+import { isMod3736 } from "@/lib/kernel/check-characters";
+import { Forbidden, Invalid, NotFound } from "@/lib/kernel/errors";
+import { openField } from "@/lib/kernel/field-crypto";
+import { query } from "@/lib/kernel/verb";
+
+/** Status by receipt number, without an account: what happened and when; no name, no address, no library's data. */
+export const getNoticeStatus = query({
+  name: "reports.getNoticeStatus",
+  who: EVERYONE,
+  input: z.object({ receiptNumber: z.string().trim().max(40) }),
+  authorise: async ({ reader, input }) => {
+    const code = input.receiptNumber.toUpperCase().replace(/[\s-]/g, "");
+    if (!/^RN\d{4}[A-Z0-9]{8}[A-Z0-9]$/.test(code) || !isMod3736(code))
+      throw new Invalid(
+        "The check character does not match: a character is mistyped. Nothing was looked up.",
+      );
+    const receiptNumber = `RN-${code.slice(2, 6)}-${code.slice(6, 14)}-${code.slice(14)}`;
+    const [row] = await reader.select().from(notices).where(eq(notices.receiptNumber, receiptNumber));
+    if (!row) throw new NotFound("There is no report of this number.");
+    return row;
+  },
+  run: async ({ reader, subject }) => {
+    const events = await reader
+      .select({ words: noticeEvents.words, at: noticeEvents.at, visible: noticeEvents.visibleToReporter })
+      .from(noticeEvents)
+      .where(eq(noticeEvents.noticeId, subject.id))
+      .orderBy(asc(noticeEvents.at));
+    return {
+      noticeId: subject.id,
+      receiptNumber: subject.receiptNumber,
+      workTitle: String(subject.claim.workTitle ?? ""),
+      state: subject.state,
+      outcome: subject.outcome,
+      reasons: subject.state === "decided" || subject.state === "incomplete" ? subject.reasons : null,
+      receivedAt: subject.receivedAt,
+      decidedAt: subject.decidedAt,
+      addressConfirmed: subject.emailConfirmedAt !== null,
+      expectsRecording: Boolean(subject.claim.hasRecording) && subject.confidentialKey === null,
+      events: events.filter((event) => event.visible).map(({ words, at }) => ({ words, at })),
+    };
+  },
+});
+
+const marketplaceOnly = async ({ actor }: { actor: { libraryId: string | null } }) => {
+  if (actor.libraryId !== null) throw new Forbidden("Reported works belong to the marketplace's moderators.");
+  return null;
+};
+
+export const listReports = query({
+  name: "reports.listReports",
+  who: ["moderator"],
+  input: z.object({}),
+  authorise: marketplaceOnly,
+  run: async ({ reader }) => {
+    const rows = await reader.select().from(notices).orderBy(desc(notices.receivedAt)).limit(300);
+    const works = await reader.select().from(reportedWorks).orderBy(asc(reportedWorks.code)).limit(500);
+    return {
+      notices: rows.map((row) => ({
+        id: row.id,
+        receiptNumber: row.receiptNumber,
+        workTitle: String(row.claim.workTitle ?? ""),
+        state: row.state,
+        outcome: row.outcome,
+        receivedAt: row.receivedAt,
+        addressConfirmed: row.emailConfirmedAt !== null,
+        hasRecording: row.confidentialKey !== null,
+      })),
+      works: works.map((row) => ({
+        id: row.id,
+        code: row.code,
+        title: row.title,
+        concerns: row.concerns,
+        owner: row.owner,
+        level: row.level,
+        hasRecording: row.fileKey !== null,
+        fingerprinted: row.fingerprinted,
+        reviewAt: row.reviewAt,
+        createdAt: row.createdAt,
+        removedAt: row.removedAt,
+      })),
+    };
+  },
+});
+
+/** REPORTS-2: the reporter's contact reaches the marketplace's moderators and nobody else. */
+export const getReport = query({
+  name: "reports.getReport",
+  who: ["moderator"],
+  input: z.object({ noticeId: z.string() }),
+  authorise: async ({ reader, actor, input }) => {
+    await marketplaceOnly({ actor });
+    const [row] = await reader.select().from(notices).where(eq(notices.id, input.noticeId));
+    if (!row) throw new NotFound();
+    return row;
+  },
+  run: async ({ reader, subject }) => {
+    const events = await reader
+      .select()
+      .from(noticeEvents)
+      .where(eq(noticeEvents.noticeId, subject.id))
+      .orderBy(asc(noticeEvents.at));
+    const earlier = await reader
+      .select({
+        receiptNumber: notices.receiptNumber,
+        state: notices.state,
+        outcome: notices.outcome,
+        id: notices.id,
+      })
+      .from(notices)
+      .where(eq(notices.emailHash, subject.emailHash));
+    const family = subject.targetFamilyId ? await familyById(reader, subject.targetFamilyId) : null;
+    return {
+      id: subject.id,
+      receiptNumber: subject.receiptNumber,
+      state: subject.state,
+      outcome: subject.outcome,
+      reasons: subject.reasons,
+      receivedAt: subject.receivedAt,
+      claim: subject.claim,
+      contact: JSON.parse(openField(subject.contact.toString(), `notice:${subject.id}`)) as {
+        name: string;
+        capacity: string;
+        email: string;
+        countryCode: string;
+        postal: string;
+        signedName: string;
+      },
+      addressConfirmed: subject.emailConfirmedAt !== null,
+      hasRecording: subject.confidentialKey !== null,
+      target: family ? { catalogueNumber: family.catalogueNumber, title: family.title } : null,
+      events: events.map((event) => ({ words: event.words, at: event.at })),
+      earlier: earlier.filter((row) => row.id !== subject.id),
+    };
+  },
+});
+export type ReportView = Awaited<ReturnType<typeof getReport>>;
+
+/** The confidential recording of a report, for the marketplace's moderators. */
+export const hearReported = query({
+  name: "reports.hearReported",
+  who: ["moderator"],
+  input: z.object({ noticeId: z.string() }),
+  authorise: async ({ reader, actor, input }) => {
+    await marketplaceOnly({ actor });
+    const [row] = await reader
+      .select({ key: notices.confidentialKey })
+      .from(notices)
+      .where(eq(notices.id, input.noticeId));
+    if (!row?.key) throw new NotFound();
+    return row.key;
+  },
+  run: async ({ subject }) => ({ fileKey: subject }),
+});

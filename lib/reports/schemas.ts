@@ -1,0 +1,65 @@
+import { z } from "zod";
+import { checkIsrc, checkIswc } from "@/lib/kernel/identifiers";
+import { CAPACITIES, CONCERNS, GROUNDS, type Ground } from "./states";
+
+const text = (least: number, most: number, message: string) =>
+  z.string().trim().min(least, message).max(most);
+const identifier = (check: (value: string) => { ok: boolean; message?: string }) =>
+  z
+    .string()
+    .trim()
+    .max(40)
+    .superRefine((value, context) => {
+      if (value === "") return;
+      const result = check(value);
+      if (!result.ok) context.addIssue({ code: "custom", message: result.message ?? "not an identifier" });
+    });
+const grounds = Object.keys(GROUNDS) as [Ground, ...Ground[]];
+
+/** What a report holds: who, what work, where, why, good faith, accuracy and authority. */
+export const SubmitNotice = z.object({
+  name: text(2, 200, "Your name."),
+  capacity: z.enum(CAPACITIES, { error: "In which capacity do you write?" }),
+  email: z.email("An address that mail reaches: the receipt and every answer go there.").max(254),
+  countryCode: z.string().regex(/^[A-Z]{2}$/, "Your country, as two letters."),
+  postal: z.string().trim().max(500).default(""),
+  workTitle: text(1, 200, "The title of your work."),
+  concerns: z.enum(CONCERNS, { error: "The work, the recording, or both?" }),
+  writers: z.string().trim().max(500).default(""),
+  owner: text(2, 200, "Who owns it."),
+  isrc: identifier(checkIsrc).default(""),
+  iswc: identifier(checkIswc).default(""),
+  release: z.string().trim().max(500).default(""),
+  where: text(3, 500, "Where it is: a catalogue number such as SM0009, or the address of the page."),
+  fromS: z.number().min(0).nullable().default(null),
+  toS: z.number().min(0).nullable().default(null),
+  grounds: z.array(z.enum(grounds)).min(1, "At least one of these."),
+  why: text(30, 4000, "In a few sentences: why you think this is yours."),
+  hasRecording: z.boolean().default(false),
+  goodFaith: z.literal(true, { error: "A report needs this statement. Everything else you wrote is kept." }),
+  accuracy: z.literal(true, { error: "A report needs this statement. Everything else you wrote is kept." }),
+  signedName: text(2, 200, "Sign with your name."),
+});
+export type SubmitNotice = z.output<typeof SubmitNotice>;
+export type SubmitNoticeInput = z.input<typeof SubmitNotice>;
+
+export const JudgeNotice = z.discriminatedUnion("decision", [
+  z.object({
+    noticeId: z.string(),
+    decision: z.literal("ask for more"),
+    reasons: text(20, 3000, "What is missing, in a sentence or two."),
+  }),
+  z.object({
+    noticeId: z.string(),
+    decision: z.literal("reject"),
+    reasons: text(60, 3000, "At least two sentences that the reporter understands."),
+  }),
+  z.object({
+    noticeId: z.string(),
+    decision: z.literal("accept"),
+    reasons: text(60, 3000, "At least two sentences that both sides understand."),
+    level: z.enum(["claimed", "supported", "adjudicated"]),
+    holdTarget: z.boolean(),
+  }),
+]);
+export type JudgeNotice = z.output<typeof JudgeNotice>;
