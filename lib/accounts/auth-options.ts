@@ -1,12 +1,13 @@
 import type { NextAuthOptions } from "next-auth";
 import type { CredentialsConfig } from "next-auth/providers/credentials";
+import { systemNow } from "@/lib/kernel/clock";
 import { Expected } from "@/lib/kernel/errors";
 import { log } from "@/lib/kernel/log";
 import { confirmSecondFactor } from "./second-factor";
 import type { SessionClaim } from "./session-claim";
 import { type SignedInPerson, signInWithLink, signInWithPassword } from "./sign-in";
 
-const SESSION_HOURS = 12;
+const SESSION_S = 12 * 3600;
 
 type Credentials = Record<string, unknown> | undefined;
 type SignInRequest = { headers?: Record<string, unknown> } | undefined;
@@ -87,7 +88,7 @@ async function withCode(
 }
 
 export const authOptions: NextAuthOptions = {
-  session: { strategy: "jwt", maxAge: SESSION_HOURS * 3600 },
+  session: { strategy: "jwt", maxAge: SESSION_S },
   pages: { signIn: "/sign-in", error: "/sign-in" },
   providers: [byPassword, byLink],
   callbacks: {
@@ -95,6 +96,7 @@ export const authOptions: NextAuthOptions = {
       delete token.secondFactorProblem;
       if (user?.sessionVersion !== undefined) {
         token.sedgewren = { personId: user.id, sessionVersion: user.sessionVersion, secondFactorAt: null };
+        token.signedInMs = systemNow().getTime();
       } else if (trigger === "update" && token.sedgewren) {
         const { claim, problem } = await withCode(token.sedgewren, session);
         token.sedgewren = claim;
@@ -103,7 +105,8 @@ export const authOptions: NextAuthOptions = {
       return token;
     },
     session: ({ session, token }) => {
-      if (token.sedgewren) session.sedgewren = token.sedgewren;
+      const ageS = (systemNow().getTime() - (token.signedInMs ?? 0)) / 1000;
+      if (token.sedgewren && ageS < SESSION_S) session.sedgewren = token.sedgewren;
       if (token.secondFactorProblem) session.secondFactorProblem = token.secondFactorProblem;
       return session;
     },

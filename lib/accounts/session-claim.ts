@@ -20,6 +20,8 @@ declare module "next-auth" {
 declare module "next-auth/jwt" {
   interface JWT {
     sedgewren?: SessionClaim;
+    /** Milliseconds; the session ends twelve hours later, however often its cookie is written anew. */
+    signedInMs?: number;
     secondFactorProblem?: string;
   }
 }

@@ -4,6 +4,7 @@ import { ActButton } from "@/components/account/act-button";
 import { CompanyForm } from "@/components/account/company-form";
 import { InviteForm } from "@/components/account/invite-form";
 import { OpenInvitations } from "@/components/account/open-invitations";
+import { FactList } from "@/components/ui/facts";
 import { fmt } from "@/components/ui/format";
 import { AsideTitle, Page } from "@/components/ui/page";
 import { HeadSentence, Section } from "@/components/ui/sentence";
@@ -13,6 +14,23 @@ import { isSignedIn } from "@/lib/kernel/actor";
 import { viewer } from "@/lib/web";
 import { endRole } from "../actions";
 import { countryOptions } from "./countries";
+
+const COMPANY_HOLDS = [
+  {
+    name: "Seats",
+    value: "People of the company, invited by you: some find and propose, some also approve and pay.",
+  },
+  {
+    name: "Productions",
+    value:
+      "Programmes, films and adverts, each with its shortlist. Music is priced for one production and its use.",
+  },
+  { name: "Licences", value: "Signed records that anybody can check, in the company’s name." },
+  {
+    name: "Invoices",
+    value: "To the name and address written here, with the tax that belongs to its country.",
+  },
+];
 
 export const metadata: Metadata = { title: "Your company" };
 
@@ -35,6 +53,9 @@ export default async function CompanyPage() {
         <HeadSentence>
           Music is licensed to a company, which keeps its productions and licences when people leave.
         </HeadSentence>
+        <div className="mt-8 max-w-measure">
+          <FactList rows={COMPANY_HOLDS} />
+        </div>
       </Page>
     );
   }

@@ -1,5 +1,5 @@
 import type { Metadata } from "next";
-import { notFound } from "next/navigation";
+import { notFound, redirect } from "next/navigation";
 import { TextLink } from "@/components/ui/button";
 import { Empty } from "@/components/ui/empty";
 import { fmt } from "@/components/ui/format";
@@ -7,6 +7,7 @@ import { Page } from "@/components/ui/page";
 import { HeadSentence, Sentence } from "@/components/ui/sentence";
 import { Table } from "@/components/ui/table";
 import { type AuditLine, auditList } from "@/lib/accounts";
+import { isSignedIn } from "@/lib/kernel/actor";
 import { viewer } from "@/lib/web";
 import { type SearchParams, wordOf } from "../where-to";
 
@@ -17,6 +18,7 @@ const whoOf = (line: AuditLine) =>
 
 export default async function LogPage({ searchParams }: { searchParams: SearchParams }) {
   const { actor } = await viewer();
+  if (!isSignedIn(actor)) redirect("/sign-in?to=/log");
   if (actor.kind !== "owner" && actor.kind !== "auditor" && actor.kind !== "admin") notFound();
   const search = await searchParams;
   const subject = wordOf(search.about)?.slice(0, 80) ?? null;
@@ -68,7 +70,7 @@ export default async function LogPage({ searchParams }: { searchParams: SearchPa
               {line.did}, by {whoOf(line)}
               <span className="block text-small text-ink-soft">
                 {fmt.dateTime(line.at)}, about{" "}
-                <TextLink className="break-all" href={`/log?about=${encodeURIComponent(line.subject)}`}>
+                <TextLink className="wrap-anywhere" href={`/log?about=${encodeURIComponent(line.subject)}`}>
                   {line.subjectName ?? line.subject}
                 </TextLink>
               </span>

@@ -1,5 +1,5 @@
 import type { Metadata } from "next";
-import { notFound } from "next/navigation";
+import { notFound, redirect } from "next/navigation";
 import { ActButton } from "@/components/account/act-button";
 import { InviteForm } from "@/components/account/invite-form";
 import { OpenInvitations } from "@/components/account/open-invitations";
@@ -12,6 +12,7 @@ import { HeadSentence, Section, Sentence } from "@/components/ui/sentence";
 import { StatusSentence } from "@/components/ui/status-sentence";
 import { listInvitations, listPeople, type PersonEntry } from "@/lib/accounts";
 import { ROLES } from "@/lib/accounts/states";
+import { isSignedIn } from "@/lib/kernel/actor";
 import { viewer } from "@/lib/web";
 import { disableAccount, enableAccount, endRole, resetFactor } from "../actions";
 import { type SearchParams, wordOf } from "../where-to";
@@ -85,6 +86,7 @@ function Entry({ person, isSelf }: { person: PersonEntry; isSelf: boolean }) {
 
 export default async function PeoplePage({ searchParams }: { searchParams: SearchParams }) {
   const { actor } = await viewer();
+  if (!isSignedIn(actor)) redirect("/sign-in?to=/people");
   if (actor.kind !== "admin") notFound();
   const text = (wordOf((await searchParams).text) ?? "").slice(0, 100);
   const { people, isCut, libraries } = await listPeople(actor, { text });

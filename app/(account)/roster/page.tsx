@@ -1,5 +1,5 @@
 import type { Metadata } from "next";
-import { notFound } from "next/navigation";
+import { notFound, redirect } from "next/navigation";
 import { ActButton } from "@/components/account/act-button";
 import { InviteForm } from "@/components/account/invite-form";
 import { OpenInvitations } from "@/components/account/open-invitations";
@@ -11,6 +11,7 @@ import { HeadSentence, Section } from "@/components/ui/sentence";
 import { StatusSentence } from "@/components/ui/status-sentence";
 import { listInvitations, listRoster, type RosterMember } from "@/lib/accounts";
 import { OWNER_GIVES, ROLE_WORDS, STAFF_GRANT_WORDS, STAFF_GRANTS } from "@/lib/accounts/states";
+import { isSignedIn } from "@/lib/kernel/actor";
 import { viewer } from "@/lib/web";
 import { endRole } from "../actions";
 
@@ -33,6 +34,7 @@ function grantsOf(member: RosterMember): string | undefined {
 
 export default async function RosterPage() {
   const { actor, roles } = await viewer();
+  if (!isSignedIn(actor)) redirect("/sign-in?to=/roster");
   const isOfLibrary = ["owner", "staff", "moderator", "accountant", "auditor"].includes(actor.kind);
   if (!isOfLibrary || ("libraryId" in actor && actor.libraryId === null)) notFound();
   const isOwner = actor.kind === "owner";
