@@ -36,7 +36,9 @@ async function shareObstacle(
     ({ ipi, name }) => ipi !== library.publisherIpi && name !== library.name,
   );
   if (others.length > 0 || (split.publishers.length > 0 && total(split.publishers) !== WHOLE_BPS))
-    return quote(`A share of this cue is not ${library.name}'s to license; it has to ask the other publisher.`);
+    return quote(
+      `A share of this cue is not ${library.name}'s to license; it has to ask the other publisher.`,
+    );
   return null;
 }
 

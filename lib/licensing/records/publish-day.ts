@@ -2,8 +2,8 @@ import { asc, desc, eq, min } from "drizzle-orm";
 import { z } from "zod";
 import type { Tx } from "@/db/client";
 import { dayRoots, recordLog, recordLogHead } from "@/db/schema/licensing";
-import { addDays, type CivilDate, isCivilDate } from "@/lib/kernel/calendar";
 import { EVERYONE } from "@/lib/kernel/actor";
+import { addDays, type CivilDate, isCivilDate } from "@/lib/kernel/calendar";
 import { assert } from "@/lib/kernel/errors";
 import { command, open, query } from "@/lib/kernel/verb";
 import { canonicalJson, type JsonValue } from "../record/canonical-json";
@@ -70,8 +70,7 @@ export const publishDays = command({
     let days = 0;
     for (; day < input.before; day = addDays(day, 1), days++)
       previous = await writeRoot(tx, day, previous, key, now);
-    if (previous && days > 0)
-      await tx.update(recordLogHead).set({ publishedThrough: previous.day });
+    if (previous && days > 0) await tx.update(recordLogHead).set({ publishedThrough: previous.day });
     return { days };
   },
   audit: ({ input, result }) => ({ subject: input.before, detail: { days: result.days } }),

@@ -19,10 +19,7 @@ export async function lockLog(tx: Tx): Promise<{ publishedThrough: CivilDate | n
     .onDuplicateKeyUpdate({ set: { name: sql`name` } });
   const [head] = await tx.select().from(recordLogHead).where(eq(recordLogHead.name, HEAD)).for("update");
   assert(head, "the head of the record log is there");
-  await tx
-    .update(recordLogHead)
-    .set({ version: sql`version + 1` })
-    .where(eq(recordLogHead.name, HEAD));
+  await tx.update(recordLogHead).set({ version: sql`version + 1` }).where(eq(recordLogHead.name, HEAD));
   return head;
 }
 
@@ -35,8 +32,7 @@ export interface LogPlace {
 export async function takeLogPlace(tx: Tx, now: Date): Promise<LogPlace> {
   const { publishedThrough } = await lockLog(tx);
   const today = now.toISOString().slice(0, 10);
-  const day =
-    publishedThrough !== null && publishedThrough >= today ? addDays(publishedThrough, 1) : today;
+  const day = publishedThrough !== null && publishedThrough >= today ? addDays(publishedThrough, 1) : today;
   const [row] = await tx
     .select({ last: max(recordLog.position) })
     .from(recordLog)
