@@ -1,4 +1,6 @@
-import { open } from "node:fs/promises";
+import { chmod, copyFile, mkdtemp, open, rm, stat } from "node:fs/promises";
+import { tmpdir } from "node:os";
+import { join } from "node:path";
 import { PassThrough, type Readable } from "node:stream";
 import { pipeline } from "node:stream/promises";
 import type { ContainerFacts } from "./container-facts";
@@ -85,7 +87,8 @@ async function decodeNative(
   onBlock: OnBlock,
   options: DecodeOptions,
 ): Promise<DecodeOutcome> {
-  const input = await open(path, "r");
+  const shared = await readableByChild(path);
+  const input = await open(shared.path, "r");
   const through = new PassThrough();
   const child = runFfmpeg({
     args: [
@@ -105,7 +108,19 @@ async function decodeNative(
     through.destroy();
     await child;
     await input.close();
+    await shared.remove();
   }
+}
+
+/** The child reopens its input as an unprivileged user; a file that only its owner may read is copied for it. */
+async function readableByChild(path: string): Promise<{ path: string; remove: () => Promise<void> }> {
+  const asRoot = process.getuid?.() === 0;
+  if (!asRoot || ((await stat(path)).mode & 0o004) !== 0) return { path, remove: async () => {} };
+  const folder = await mkdtemp(join(tmpdir(), "decode-"));
+  const copy = join(folder, "input");
+  await copyFile(path, copy);
+  await chmod(copy, 0o644);
+  return { path: copy, remove: () => rm(folder, { recursive: true, force: true }) };
 }
 
 async function* floatBlocks(stream: Readable, width: number): AsyncGenerator<Decoded> {

@@ -68,5 +68,6 @@ export {
   EXACT_CUTDOWN_S,
   STING_S_MAX,
 } from "./states";
+export { checkStems, type StemsContext } from "./stems";
 export { technicalChecks } from "./technical-checks";
 export { estimateTempo, type TempoEstimate, tempoAccuracy1, tempoAccuracy2 } from "./tempo";
