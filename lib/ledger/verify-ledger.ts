@@ -71,14 +71,17 @@ const BREACHES: ReadonlyArray<readonly [invariant: string, query: SQL]> = [
   ],
   [
     "LEDGER-10 no more of an advance has come back than was paid, and never less than nothing",
-    sql`select concat(c.holder_id, ' ', l.holder_id) as id
-      from ledger_transfers t
-      join ledger_accounts c on c.kind = 'composer available' and c.id in (t.debit_account_id, t.credit_account_id)
-      join ledger_accounts l on l.kind = 'library available' and l.id in (t.debit_account_id, t.credit_account_id)
-      group by c.id, c.holder_id, c.currency, l.id, l.holder_id
-      having sum(case when t.debit_account_id = c.id then t.amount_minor else -t.amount_minor end) not between 0 and
-        coalesce((select sum(a.amount_minor) from advances a
-          where a.person_id = c.holder_id and a.library_id = l.holder_id and a.currency = c.currency), 0)`,
+    sql`select concat(back.person_id, ' ', back.library_id) as id
+      from (select c.holder_id as person_id, l.holder_id as library_id, c.currency as currency,
+          sum(case when t.debit_account_id = c.id then t.amount_minor else -t.amount_minor end) as amount
+        from ledger_transfers t
+        join ledger_accounts c on c.kind = 'composer available' and c.id in (t.debit_account_id, t.credit_account_id)
+        join ledger_accounts l on l.kind = 'library available' and l.id in (t.debit_account_id, t.credit_account_id)
+        group by c.holder_id, l.holder_id, c.currency) back
+      left join (select person_id, library_id, currency, sum(amount_minor) as amount from advances
+        group by person_id, library_id, currency) paid
+        on paid.person_id = back.person_id and paid.library_id = back.library_id and paid.currency = back.currency
+      where back.amount < 0 or back.amount > coalesce(paid.amount, 0)`,
   ],
   [
     "LEDGER-11 a paid payout is one entry of its amount, from its own account to the bank",
