@@ -19,12 +19,12 @@ const DAY_MS = 86_400_000;
 /** LICENSING-2 for every line of an order as it stands; the first obstacle, in words, or null. */
 export async function orderObstacle(
   reader: Reader,
-  order: Pick<OrderRow, "libraryId">,
+  order: Pick<OrderRow, "libraryId" | "placedAt">,
   lines: readonly OrderLineRow[],
   at: Date,
 ): Promise<string | null> {
   const library = await libraryById(reader, order.libraryId);
-  const card = await cardAt(reader, order.libraryId, at);
+  const card = await cardAt(reader, order.libraryId, order.placedAt);
   assert(library && card, `the library ${order.libraryId} and its card are there`);
   for (const line of lines) {
     const family = await familyById(reader, line.familyId);

@@ -14,6 +14,7 @@ import { invoiceTotals, taxTreatment } from "../invoice-tax";
 import { PlaceOrder } from "../schemas";
 import { nextInSeries, SERIES } from "./number-series";
 import type { StoredLicensee, StoredPrice } from "./own-order";
+import { SELLER_ZONE } from "./write-invoice";
 
 type Wanted = z.output<typeof PlaceOrder>["lines"][number];
 type Family = NonNullable<Awaited<ReturnType<typeof familyById>>>;
@@ -24,9 +25,6 @@ interface PricedLine {
   recordingIds: string[];
   price: StoredPrice;
 }
-
-/** The seller is one UK company, so its tax point is a date in London. */
-export const SELLER_ZONE = "Europe/London";
 
 async function recordingsFor(tx: Tx, family: Family, wanted: Wanted): Promise<string[]> {
   const listed = (await recordingsOfFamily(tx, family.id)).filter(({ state }) => state === "listed");

@@ -49,7 +49,8 @@ const Cue = z.strictObject({
         versionId: Text,
         isrc: stored(checkIsrc).nullable(),
         durationMs: z.number().int().positive(),
-        masterSha256: Sha256,
+        /** null where this service had rendered no master when it signed. */
+        masterSha256: Sha256.nullable(),
         deliveredSha256: Sha256,
       }),
     )
