@@ -26,6 +26,7 @@ export {
   splitsNow,
 } from "./for-rooms";
 export { licensedMastersOf, lockLibrary } from "./for-sales";
+export { hearRecording } from "./hear-recording";
 export {
   acceptShare,
   type FamilyRegistration,
@@ -35,7 +36,9 @@ export {
   writeSplit,
 } from "./register-family";
 export { readRecordingToRender, recordMaster, recordPreview } from "./rendering/record-rendering";
-export { FamilyDescription, Section, Share } from "./schemas";
+export { Brief, type BriefInput, FamilyDescription, Section, Share } from "./schemas";
+export { readBrief } from "./search/read-brief";
+export { type SearchAnswer, type SearchResult, searchCues } from "./search/search-cues";
 export { searchTextOf } from "./search-text";
 export {
   DEALS,

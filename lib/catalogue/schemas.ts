@@ -1,5 +1,6 @@
 import { z } from "zod";
-import { DEALS, WRITER_ROLES } from "./states";
+import { DEALS, EXCLUDED_KINDS, WANTED_VERSIONS, type WantedVersion, WRITER_ROLES } from "./states";
+import { endings, genres, instruments, moods, shapes, uses, voiceKinds } from "./vocabularies";
 
 export const CreateLibrary = z.object({
   code: z.string().regex(/^[A-Z]{2,4}$/, "two to four capital letters"),
@@ -62,3 +63,61 @@ export const Share = z.object({
 export type Share = z.infer<typeof Share>;
 
 export const writerRoleIds = Object.keys(WRITER_ROLES) as (keyof typeof WRITER_ROLES)[];
+
+type Ids<T extends readonly { id: string }[]> = [T[number]["id"], ...T[number]["id"][]];
+const idsOf = <T extends readonly { id: string }[]>(list: T) => list.map((term) => term.id) as Ids<T>;
+const someOf = <T extends readonly { id: string }[]>(list: T) =>
+  z
+    .array(z.enum(idsOf(list)))
+    .max(8)
+    .default([]);
+
+/** World, as a territory of the one-stop question. */
+export const WORLD = "*";
+
+/**
+ * A brief: what the sentence of the search asks for. Lists are "any of"; exclusions, library and one-stop are
+ * conditions; everything else is a word that a cue may miss.
+ */
+export const Brief = z.object({
+  moods: someOf(moods),
+  uses: someOf(uses),
+  lead: someOf(instruments),
+  genres: someOf(genres),
+  /** "some" is any voice at all. */
+  voice: z
+    .enum([...idsOf(voiceKinds), "some"])
+    .nullable()
+    .default(null),
+  bpmFrom: z.int().min(20).max(400).nullable().default(null),
+  bpmTo: z.int().min(20).max(400).nullable().default(null),
+  shape: z.enum(idsOf(shapes)).nullable().default(null),
+  ending: z.enum(idsOf(endings)).nullable().default(null),
+  versions: z
+    .array(z.enum(Object.keys(WANTED_VERSIONS) as [WantedVersion, ...WantedVersion[]]))
+    .max(6)
+    .default([]),
+  lengthS: z.int().min(1).max(3600).nullable().default(null),
+  library: z
+    .string()
+    .regex(/^[A-Z]{2,4}$/)
+    .nullable()
+    .default(null),
+  oneStop: z
+    .array(z.string().regex(/^([A-Z]{2}|\*)$/))
+    .max(40)
+    .default([]),
+  /** "mood:playful", "word:ukulele". */
+  not: z
+    .array(z.string().regex(new RegExp(`^(${EXCLUDED_KINDS.join("|")}):[\\p{L}\\p{N} '-]{1,40}$`, "u")))
+    .max(16)
+    .default([]),
+  text: z.string().trim().max(200).default(""),
+});
+export type Brief = z.output<typeof Brief>;
+export type BriefInput = z.input<typeof Brief>;
+
+export const SearchCues = Brief.extend({
+  page: z.int().min(0).max(200).default(0),
+  pageSize: z.int().min(1).max(40).default(12),
+});

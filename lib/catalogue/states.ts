@@ -25,3 +25,22 @@ export const WRITER_ROLES = {
   TR: "translator",
 } as const;
 export type WriterRole = keyof typeof WRITER_ROLES;
+
+/** Versions that a brief may ask for; each may be met by more than one role. */
+export const WANTED_VERSIONS = {
+  bed: "a bed",
+  "no-lead": "no lead",
+  instrumental: "an instrumental",
+  "no-drums": "no drums",
+  "60": "a 60",
+  "30": "a 30",
+  "15": "a 15",
+  sting: "a sting",
+  loop: "a loop",
+  stems: "stems",
+} as const;
+export type WantedVersion = keyof typeof WANTED_VERSIONS;
+
+/** Kinds of thing a brief may exclude; "word" is a word of the description. */
+export const EXCLUDED_KINDS = ["mood", "use", "instrument", "genre", "voice", "word"] as const;
+export type ExcludedKind = (typeof EXCLUDED_KINDS)[number];
