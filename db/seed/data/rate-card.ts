@@ -216,7 +216,7 @@ export const mediaClasses: readonly MediaClassRow[] = [
     label: "Telephone hold, shop or venue background (reproduction only)",
     baseMinor: 7000,
     tierMeasure: "lines or sites",
-    tiers: tiers("lines or sites", [11, one], [101, factor(2, 1)]),
+    tiers: tiers("lines or sites", [11, one], [101, factor(2, 1)], [null, null]),
     worldOnly: false,
     episodes: false,
     studentOrCharity: false,
