@@ -24,7 +24,7 @@ export interface CueCard {
   familyId: string;
   number: string;
   title: string;
-  library: { code: string; name: string; currency: string };
+  library: { id: string; code: string; name: string; currency: string };
   writers: string[];
   bpm: number | null;
   musicalKey: string | null;
@@ -76,7 +76,7 @@ export async function cueCards(reader: Reader, familyIds: readonly string[]): Pr
       familyId: family.id,
       number: family.catalogueNumber,
       title: family.title,
-      library: { code: library.code, name: library.name, currency: library.currency },
+      library: { id: library.id, code: library.code, name: library.name, currency: library.currency },
       writers: (writers.get(family.id) ?? []).map((writer) => writer.name),
       bpm: family.bpm,
       musicalKey: family.musicalKey,

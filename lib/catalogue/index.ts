@@ -26,6 +26,7 @@ export {
   splitsNow,
 } from "./for-rooms";
 export { licensedMastersOf, lockLibrary } from "./for-sales";
+export { type CuePage, getCue, type LibraryEntry, listLibraries, type ShareLine } from "./get-cue";
 export { hearRecording } from "./hear-recording";
 export {
   acceptShare,

@@ -9,4 +9,4 @@ export {
 } from "./reads";
 export { setProductionUse } from "./set-production-use";
 export { addToShortlist, removeFromShortlist, setShortlistItem } from "./shortlist";
-export { PRODUCTION_KINDS, type ProductionKind, SHORTLIST_STATES, type ShortlistState } from "./states";
+export { PRODUCTION_KINDS, SHORTLIST_STATES, type ShortlistState } from "./states";

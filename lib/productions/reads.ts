@@ -29,7 +29,7 @@ export interface ShortlistCue {
     familyId: string;
     number: string;
     title: string;
-    library: { code: string; name: string; currency: string };
+    library: { id: string; code: string; name: string; currency: string };
     availability: Availability;
     versions: CueVersion[];
     ending: string;

@@ -1,5 +1,5 @@
 import { z } from "zod";
-import { PRODUCTION_KINDS, SHORTLIST_STATES } from "./states";
+import { SHORTLIST_STATES } from "./states";
 
 const optional = (most: number) =>
   z
@@ -14,7 +14,7 @@ export const CreateProduction = z.object({
   /** What outsiders see instead of a title that is still confidential. */
   codeName: optional(80),
   episode: optional(120),
-  kind: z.enum(PRODUCTION_KINDS),
+  kind: z.string().trim().min(1, "Say what it is.").max(60),
   client: optional(200),
 });
 export type CreateProduction = z.input<typeof CreateProduction>;

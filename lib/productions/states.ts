@@ -2,7 +2,7 @@
 export const SHORTLIST_STATES = ["picked", "considering", "out"] as const;
 export type ShortlistState = (typeof SHORTLIST_STATES)[number];
 
-/** Plain words for what a production is; the licence record repeats them. */
+/** Offered as words for what a production is; any other may be written. The licence record repeats them. */
 export const PRODUCTION_KINDS = [
   "TV programme",
   "radio programme",
@@ -15,4 +15,3 @@ export const PRODUCTION_KINDS = [
   "event or exhibition",
   "other",
 ] as const;
-export type ProductionKind = (typeof PRODUCTION_KINDS)[number];
