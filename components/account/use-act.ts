@@ -10,9 +10,9 @@ type Failure = Extract<ActionResult<unknown>, { ok: false }>;
 export function useAct<I, R>(act: Act<I, R>) {
   const [failure, setFailure] = useState<Failure | null>(null);
   const [isRunning, start] = useTransition();
-  const run = (input: I, done?: (data: R) => void) =>
+  const run = (input: I, done?: (data: R) => void, operationId?: string) =>
     start(async () => {
-      const answer = await act(input);
+      const answer = await act(input, operationId);
       setFailure(answer.ok ? null : answer);
       if (answer.ok) done?.(answer.data);
     });
