@@ -7,7 +7,28 @@ export {
   postDisputeWon,
   type WonDispute,
 } from "./dispute";
+export { getJournal, type JournalEntry } from "./get-journal";
+export {
+  type DueNow,
+  getPayout,
+  getPayouts,
+  type PayoutOfRun,
+  type PayoutRunView,
+  type Payouts,
+  type PayoutView,
+} from "./get-payouts";
+export { getSales, type SaleLine, type Sales, type SalesGroup, type SalesOfCurrency } from "./get-sales";
+export {
+  getStatement,
+  listStatements,
+  type Statement,
+  type StatementLine,
+  type StatementMonth,
+  type StatementSale,
+} from "./get-statement";
+export { getTrialBalance, type TrialBalance, type TrialBalances, type TrialRow } from "./get-trial-balance";
 export { refreshPayee } from "./jobs";
+export { type Month, monthInWords, monthOf } from "./months";
 export {
   getOwnPayee,
   getOwnProcessorAccount,

@@ -1,12 +1,15 @@
 import { eq } from "drizzle-orm";
 import { z } from "zod";
 import { db } from "@/db/client";
-import { ledgerAccounts, ledgerEntries, ledgerTransfers, payees } from "@/db/schema/ledger";
+import { ledgerAccounts, ledgerEntries, ledgerTransfers, payees, payouts } from "@/db/schema/ledger";
 import { type Actor, system } from "@/lib/kernel/actor";
+import { withBusinessClock } from "@/lib/kernel/clock";
 import { newId } from "@/lib/kernel/ids";
 import { command, open } from "@/lib/kernel/verb";
 import {
+  beginPayout,
   type Capture,
+  confirmPayoutRun,
   type DisputeOfPayment,
   type EntryToPost,
   postCapture,
@@ -14,7 +17,13 @@ import {
   postDisputeWon,
   postEntry,
   postRefund,
+  preparePayoutRun,
   type RefundOfLines,
+  recordAdvance,
+  recordPayoutSent,
+  releaseHolds,
+  releasePayoutRun,
+  settlePayments,
   type WonDispute,
 } from "@/lib/ledger";
 import { type AccountRef, type Leg, netByAccount } from "@/lib/ledger/legs";
@@ -245,4 +254,60 @@ export async function makePayee(
       ...values,
     });
   return id;
+}
+
+const at =
+  (instant: string) =>
+  <T>(work: () => Promise<T>) =>
+    withBusinessClock(new Date(instant), work);
+
+/** Prepares, releases, confirms and sends a run as its jobs do, but for the processor's own part. */
+export async function payOut(shop: Shop): Promise<string[]> {
+  const { runId } = await preparePayoutRun(shop.accountant, { libraryId: shop.libraryId, currency: "GBP" });
+  await releasePayoutRun(shop.accountant, { runId });
+  await confirmPayoutRun(shop.marketplace, { runId });
+  const rows = await db().select().from(payouts).where(eq(payouts.runId, runId));
+  for (const { id } of rows)
+    if (await beginPayout(job, { payoutId: id }))
+      await recordPayoutSent(job, { payoutId: id, transferId: `tr_${id}` });
+  return rows.map(({ id }) => id);
+}
+
+/** The worked sale from capture to dispute, on its days; "march" stops after the payout. */
+export async function playWorkedSale(shop: Shop, until: "march" | "april") {
+  const sale = workedSale(shop);
+  const { libraryId } = shop;
+  const paidAt = new Date("2025-11-03T00:00:00Z");
+  await recordAdvance(shop.owner, {
+    libraryId,
+    personId: shop.C,
+    amountMinor: 4500n,
+    currency: "GBP",
+    paidAt,
+  });
+  await makePayee("library", libraryId);
+  await makePayee("person", shop.A);
+  await at("2026-03-14T10:00:00Z")(() => steps.capture(job, sale));
+  const movement = (sourceId: string | null, amount: string) => ({
+    movements: [
+      { movementId: newId("txn"), sourceId: sourceId ?? "", netMinor: minor(amount), currency: "GBP" },
+    ],
+  });
+  await at("2026-03-17T09:00:00Z")(() => settlePayments(job, movement(sale.chargeId, "431.23")));
+  await at("2026-03-28T00:00:00Z")(() => releaseHolds(job, { orderId: sale.orderId }));
+  await at("2026-03-31T09:00:00Z")(() => payOut(shop));
+  if (until === "march") return sale;
+  const eventAt = new Date("2026-04-02T11:00:00Z");
+  const words = "Bought twice by mistake: refunded.";
+  const refund = { orderId: sale.orderId, words, processorFeeAbsorbed: true as const, eventAt };
+  await at("2026-04-02T11:00:00Z")(() => steps.refund(job, { ...refund, orderLineIds: [lineOf(sale, 2)] }));
+  const dispute = { orderId: sale.orderId, disputeId: newId("dp"), chargeMinor: 1500n };
+  await at("2026-04-20T08:00:00Z")(() =>
+    steps.dispute(job, {
+      ...dispute,
+      words: "The buyer's bank took this payment back.",
+      eventAt: new Date("2026-04-20T08:00:00Z"),
+    }),
+  );
+  return sale;
 }
