@@ -86,7 +86,7 @@ describe("one function for every container", () => {
     expect(Math.abs(facts.declaredS! - SECONDS)).toBeLessThan(0.05);
   });
 
-  it.each(FORMATS)("%s: the samples are those that ffmpeg decodes", async (name) => {
+  it.each(FORMATS)("AUDIO-4: %s gives the samples that ffmpeg decodes, full scale at 1.0", async (name) => {
     const { channels } = await decodeWhole(at(name));
     const expected = oracle(at(name));
     // ffmpeg's raw output keeps a coder's last frame, and the first one of a stream without a container.
@@ -200,7 +200,7 @@ describe("real-world linear files", () => {
   });
 });
 
-describe("damage is never taken for a whole file", () => {
+describe("AUDIO-2: damage is never taken for a whole file", () => {
   it.each(FORMATS)("%s cut in half is reported as incomplete with how far it reads", async (name) => {
     const half = at(`half-${name}`);
     copyFileSync(at(name), half);
@@ -232,6 +232,16 @@ describe("damage is never taken for a whole file", () => {
       expect(outcome.complete).toBe(false);
     },
   );
+
+  it("AUDIO-8: a failed read is thrown as it is, not as damage", async () => {
+    for (const name of ["a.wav", "l.flac", "p.mp3"]) {
+      const source = blobSource(new Blob([new Uint8Array(readFileSync(at(name)))]), name);
+      const facts = await probeSource(source);
+      const fault = Object.assign(new Error("EIO: i/o error, read"), { code: "EIO", syscall: "read" });
+      const failing = { ...source, read: () => Promise.reject(fault) };
+      await expect(decodeSource(failing, facts, () => {})).rejects.toBe(fault);
+    }
+  });
 
   it("a fault of the receiver is thrown as it is, not as damage", async () => {
     const fault = new Error("disk full");
@@ -287,7 +297,7 @@ describe("refusals", () => {
     await expect(probe(at("adpcm.wav"))).rejects.toBeInstanceOf(UnsupportedAudio);
   });
 
-  it("says so where name and bytes disagree", async () => {
+  it("AUDIO-1: the bytes decide, and the name is only compared with them", async () => {
     copyFileSync(at("p.mp3"), at("p.wav"));
     expect(await probe(at("p.wav"))).toMatchObject({
       container: "MP3",

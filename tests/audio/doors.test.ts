@@ -39,7 +39,7 @@ it("the room imports nothing of the project", () => {
   }
 });
 
-it("a native child sees no environment and, under root, is nobody", async () => {
+it("AUDIO-6: a native child sees no environment and, under root, is nobody", async () => {
   process.env.AUDIO_SECRET = "sesame";
   let output = "";
   const asRoot = process.getuid?.() === 0;

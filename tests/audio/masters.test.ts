@@ -116,7 +116,7 @@ describe("bext (EBU Tech 3285 v2)", () => {
 });
 
 describe("renderMaster", () => {
-  it("copies 48 kHz 24 bit sample for sample, and gives the same bytes twice", async () => {
+  it("AUDIO-7: copies 48 kHz 24 bit sample for sample, and gives the same bytes twice", async () => {
     const rendered = await renderMaster(at("48000.wav"), at("m1.wav"), { description: "one" });
     await renderMaster(at("48000.wav"), at("m2.wav"), { description: "one" });
     expect(rendered.converted).toBe(false);
@@ -194,22 +194,25 @@ describe("preview", () => {
     expect(markTimes(5.5, "a")).toEqual([]);
   });
 
-  it.each([44100, 48000])("of a %d Hz master starts and ends with it to the sample", async (rateHz) => {
-    const made = await encodePreview(at(`${rateHz}.wav`), at("preview.mp3"), { seed: "rec_7" });
-    const preview = await decodeWhole(at("preview.mp3"));
-    await renderMaster(at(`${rateHz}.wav`), at("preview-master.wav"), {});
-    const master = await decodeWhole(at("preview-master.wav"));
-    expect(preview.sampleRateHz).toBe(48000);
-    expect(preview.channels[0]!.length).toBe(master.channels[0]!.length);
-    expect(made.samples).toBe(master.channels[0]!.length);
-    for (const fromS of [1, 20, SECONDS - 3])
-      expect(lagSamples(master.channels[0]!, preview.channels[0]!, fromS)).toBe(0);
-    // ffmpeg's decoder is a second witness of start and length.
-    ffmpeg("-i", at("preview.mp3"), "-c:a", "pcm_f32le", at("witness.wav"));
-    const witness = await decodeWhole(at("witness.wav"));
-    expect(witness.channels[0]!.length).toBe(master.channels[0]!.length);
-    expect(lagSamples(master.channels[0]!, witness.channels[0]!, 20)).toBe(0);
-  });
+  it.each([44100, 48000])(
+    "AUDIO-5: of a %d Hz master starts and ends with it to the sample",
+    async (rateHz) => {
+      const made = await encodePreview(at(`${rateHz}.wav`), at("preview.mp3"), { seed: "rec_7" });
+      const preview = await decodeWhole(at("preview.mp3"));
+      await renderMaster(at(`${rateHz}.wav`), at("preview-master.wav"), {});
+      const master = await decodeWhole(at("preview-master.wav"));
+      expect(preview.sampleRateHz).toBe(48000);
+      expect(preview.channels[0]!.length).toBe(master.channels[0]!.length);
+      expect(made.samples).toBe(master.channels[0]!.length);
+      for (const fromS of [1, 20, SECONDS - 3])
+        expect(lagSamples(master.channels[0]!, preview.channels[0]!, fromS)).toBe(0);
+      // ffmpeg's decoder is a second witness of start and length.
+      ffmpeg("-i", at("preview.mp3"), "-c:a", "pcm_f32le", at("witness.wav"));
+      const witness = await decodeWhole(at("witness.wav"));
+      expect(witness.channels[0]!.length).toBe(master.channels[0]!.length);
+      expect(lagSamples(master.channels[0]!, witness.channels[0]!, 20)).toBe(0);
+    },
+  );
 
   it("is at least 192 kbit/s, peaks at or under −1 dBTP and carries its marks", async () => {
     const made = await encodePreview(at("48000.wav"), at("marked.mp3"), { seed: "rec_7" });

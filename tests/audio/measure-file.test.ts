@@ -62,7 +62,7 @@ it("gives a mono file's samples for all three streams", async () => {
   expect(contour.channels).toHaveLength(1);
 });
 
-it("keeps its memory bounded: twenty minutes of stereo 24 bit (345 MB) need no more than 200 MB", async () => {
+it("AUDIO-3: memory is bounded: twenty minutes of stereo 24 bit (345 MB) need no more than 200 MB", async () => {
   // A sparse file: twenty minutes of digital silence takes no disk and the same path through the reader.
   const path = join(folder, "long.wav");
   const frames = 1200 * 48000;
