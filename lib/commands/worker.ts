@@ -1,8 +1,11 @@
 import { closeDb } from "@/db/client";
+import { demonstrationHandlers } from "@/db/seed/jobs";
+import { closeDemonstration } from "@/db/seed/masters";
 import { catalogueHandlers } from "@/lib/catalogue/jobs";
 import { deliveriesHandlers } from "@/lib/deliveries/jobs";
 import { closeMeasuring } from "@/lib/deliveries/measuring/measure-version";
 import { type Handlers, runWorker } from "@/lib/jobs";
+import { env } from "@/lib/kernel/env";
 import { log } from "@/lib/kernel/log";
 import { ledgerHandlers } from "@/lib/ledger/jobs";
 import { licensingHandlers } from "@/lib/licensing/jobs";
@@ -23,6 +26,7 @@ export const handlers: Handlers = {
   ...licensingHandlers,
   ...ledgerHandlers,
   ...reportsHandlers,
+  ...(env.SEDGEWREN_MODE === "demo" ? demonstrationHandlers : {}),
 };
 
 const stop = new AbortController();
@@ -30,5 +34,5 @@ for (const signal of ["SIGTERM", "SIGINT"] as const) process.on(signal, () => st
 
 log.info("the worker is ready");
 await runWorker({ handlers, signal: stop.signal, onTick: enqueueSlots });
-await Promise.allSettled([closeScreeningEngine(), closeMeasuring()]);
+await Promise.allSettled([closeScreeningEngine(), closeMeasuring(), closeDemonstration()]);
 await closeDb();

@@ -30,6 +30,9 @@ export const messages = {
   "ledger.openPayee": z.object({ payeeId: id }),
   "ledger.sendPayout": z.object({ payoutId: id }),
   "mail.send": z.object({ mailId: id }),
+  /** The demonstration's own steps: deliver one item of its plan, then see it through. Never enqueued in live mode. */
+  "demo.bring": z.object({ item: z.string().max(40) }),
+  "demo.seeThrough": z.object({ item: z.string().max(40), deliveryId: id, turn: z.int().min(0) }),
 } as const satisfies Record<string, z.ZodObject>;
 
 export type MessageName = keyof typeof messages;
