@@ -1,5 +1,6 @@
 import { and, asc, desc, eq, inArray, isNull } from "drizzle-orm";
 import { z } from "zod";
+import type { Reader } from "@/db/client";
 import { alignedListenings, caseMessages, cases, confirmations, findings } from "@/db/schema/review";
 import { familiesByIds } from "@/lib/catalogue";
 import { deliveryOfFamily } from "@/lib/deliveries";
@@ -44,20 +45,10 @@ export const getCaseOfDelivery = query({
       .where(and(eq(caseMessages.caseId, row.id), inArray(caseMessages.kind, ["question", "answer"])))
       .orderBy(asc(caseMessages.at));
     const given = await reader
-      .select()
+      .select({ finding: findings, second: confirmations })
       .from(findings)
+      .leftJoin(confirmations, eq(confirmations.findingId, findings.id))
       .where(and(eq(findings.caseId, row.id), isNull(findings.supersededBy)));
-    const seconds = given.length
-      ? await reader
-          .select()
-          .from(confirmations)
-          .where(
-            inArray(
-              confirmations.findingId,
-              given.map((finding) => finding.id),
-            ),
-          )
-      : [];
     const isClosed = row.state === "closed";
     return {
       number: row.number,
@@ -72,60 +63,77 @@ export const getCaseOfDelivery = query({
         hasFile: message.fileKey !== null,
       })),
       groups: await Promise.all(
-        groups.map(async (group) => {
-          const family = families.find((candidate) => candidate.id === group.referenceKey);
-          const isListed = family?.state === "listed";
-          const hits = await hitsByIds(reader, group.hitIds);
-          const passageIds = hits.flatMap((hit) => hit.passages.map((passage) => passage.id));
-          const listenings =
-            isListed && passageIds.length
-              ? await reader
-                  .select({ passageId: alignedListenings.passageId, state: alignedListenings.state })
-                  .from(alignedListenings)
-                  .where(inArray(alignedListenings.passageId, passageIds))
-              : [];
-          const finding = isClosed ? given.find((candidate) => candidate.groupId === group.id) : undefined;
-          const second = seconds.find((candidate) => candidate.findingId === finding?.id);
-          return {
-            relation: group.relation,
-            reference:
-              group.referenceKind === "own"
-                ? "no other recording"
-                : group.referenceKind === "reported"
-                  ? "a reported work"
-                  : isListed
-                    ? "a recording that is listed on this service"
-                    : "a confidential holding",
-            passages: hits.flatMap((hit) =>
-              hit.passages.map((passage) => ({
-                id: passage.id,
-                startS: passage.startS,
-                endS: passage.endS,
-                speed: passage.speed,
-                pitchSemitones: passage.pitchSemitones,
-                mayHear: listenings.some(
-                  (listening) => listening.passageId === passage.id && listening.state === "ready",
-                ),
-              })),
-            ),
-            finding: finding
-              ? {
-                  outcome: finding.outcome,
-                  explainedBy: finding.explainedBy,
-                  codes: finding.codes,
-                  reasons: finding.reasons,
-                  notDecided: finding.notDecided,
-                  decidedAt: finding.decidedAt,
-                  confirmed: second?.confirmed ?? false,
-                }
-              : null,
-          };
-        }),
+        groups.map(async (group) => ({
+          ...(await groupForDeliverer(reader, group, families)),
+          finding: isClosed ? findingForDeliverer(given, group.id) : null,
+        })),
       ),
     };
   },
 });
 export type DelivererCase = Awaited<ReturnType<typeof getCaseOfDelivery>>;
+
+type Group = Awaited<ReturnType<typeof groupsOfCase>>[number];
+
+function referenceForDeliverer(group: Group, isListed: boolean): string {
+  if (group.referenceKind === "own") return "no other recording";
+  if (group.referenceKind === "reported") return "a reported work";
+  return isListed ? "a recording that is listed on this service" : "a confidential holding";
+}
+
+async function groupForDeliverer(
+  reader: Reader,
+  group: Group,
+  families: Awaited<ReturnType<typeof familiesByIds>>,
+) {
+  const isListed = families.find((family) => family.id === group.referenceKey)?.state === "listed";
+  const hits = await hitsByIds(reader, group.hitIds);
+  const passageIds = hits.flatMap((hit) => hit.passages.map((passage) => passage.id));
+  const listenings =
+    isListed && passageIds.length
+      ? await reader
+          .select({ passageId: alignedListenings.passageId, state: alignedListenings.state })
+          .from(alignedListenings)
+          .where(inArray(alignedListenings.passageId, passageIds))
+      : [];
+  return {
+    relation: group.relation,
+    reference: referenceForDeliverer(group, isListed),
+    passages: hits.flatMap((hit) =>
+      hit.passages.map((passage) => ({
+        id: passage.id,
+        startS: passage.startS,
+        endS: passage.endS,
+        speed: passage.speed,
+        pitchSemitones: passage.pitchSemitones,
+        mayHear: listenings.some(
+          (listening) => listening.passageId === passage.id && listening.state === "ready",
+        ),
+      })),
+    ),
+  };
+}
+
+function findingForDeliverer(
+  given: readonly {
+    finding: typeof findings.$inferSelect;
+    second: typeof confirmations.$inferSelect | null;
+  }[],
+  groupId: string,
+) {
+  const entry = given.find((candidate) => candidate.finding.groupId === groupId);
+  if (!entry) return null;
+  const { finding, second } = entry;
+  return {
+    outcome: finding.outcome,
+    explainedBy: finding.explainedBy,
+    codes: finding.codes,
+    reasons: finding.reasons,
+    notDecided: finding.notDecided,
+    decidedAt: finding.decidedAt,
+    confirmed: second?.confirmed ?? false,
+  };
+}
 
 /** The deliverer hears the overlapping seconds of a listed recording against their own; nothing else of it. */
 export const hearOwnPassage = query({

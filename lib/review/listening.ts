@@ -2,9 +2,10 @@ import { mkdir, rm } from "node:fs/promises";
 import { join } from "node:path";
 import { eq } from "drizzle-orm";
 import { z } from "zod";
+import type { Tx } from "@/db/client";
 import { alignedListenings, caseGroups, cases, disclosures } from "@/db/schema/review";
 import { AudioError, renderAligned } from "@/lib/audio";
-import { recordingById } from "@/lib/catalogue";
+import { familyById, recordingById } from "@/lib/catalogue";
 import { system } from "@/lib/kernel/actor";
 import { env } from "@/lib/kernel/env";
 import { NotFound } from "@/lib/kernel/errors";
@@ -12,7 +13,7 @@ import { newId } from "@/lib/kernel/ids";
 import { command, open, query } from "@/lib/kernel/verb";
 import { hitsByIds, reportedFile } from "@/lib/screening";
 import { storeFile, withLocalCopy } from "@/lib/uploads";
-import { lockCase, requireNoConflict } from "./own-case";
+import { lockCase, type Moderator, requireNoConflict } from "./own-case";
 
 const actor = system("review.renderListening");
 const PASSAGES_MAX = 12;
@@ -127,6 +128,7 @@ export const hearPassage = command({
     if (!listening?.fileKey || !group) throw new NotFound();
     const row = await lockCase(tx, actor, group.caseId);
     await requireNoConflict(tx, actor, row.id);
+    if (!(await mayHearReference(tx, actor, listening.hitId))) throw new NotFound();
     return { listening, row };
   },
   run: async ({ tx, actor, input, subject, now }) => {
@@ -147,3 +149,11 @@ export const hearPassage = command({
     detail: { passageId: input.passageId },
   }),
 });
+
+/** REVIEW-5: a library's moderator hears its own recordings, and of another library only what is listed. */
+async function mayHearReference(tx: Tx, actor: Moderator, hitId: string): Promise<boolean> {
+  if (actor.libraryId === null) return true;
+  const [hit] = await hitsByIds(tx, [hitId]);
+  const family = hit?.referenceFamilyId ? await familyById(tx, hit.referenceFamilyId) : null;
+  return family !== null && (family.libraryId === actor.libraryId || family.state === "listed");
+}

@@ -85,57 +85,16 @@ export const admitRecording = command({
       ...facts,
       delivery: { ...subject.request, durationS: subject.recording.durationS },
     });
-    const prints = await tx
-      .select({
-        channel: recordingFingerprints.channel,
-        comparable: recordingFingerprints.comparable,
-        notComparable: recordingFingerprints.notComparable,
-        durationS: recordingFingerprints.durationS,
-        contentS: recordingFingerprints.contentS,
-      })
-      .from(recordingFingerprints)
-      .where(
-        and(
-          eq(recordingFingerprints.subjectId, input.recordingId),
-          eq(recordingFingerprints.engineVersion, input.engineVersion),
-        ),
-      );
-    const mid = prints.find((row) => row.channel === "mid");
-    if (!mid) throw new Bug(`${input.recordingId} is admitted without a fingerprint`);
-    const comparable = prints.some((row) => row.comparable);
-    const familyMatchMissing =
-      subject.request.expectsFamilyMatch &&
-      comparable &&
-      !explained.some((hit) => hit.explainedBy === "family");
     const compared = input.recordingsCompared + added.filter((row) => row.subjectKind === "recording").length;
-    const verdict = outcomeOf(explained, {
-      comparable,
-      reason: reasonOf(mid),
-      recordingsCompared: compared,
-      familyMatchMissing,
+    const { prints, mid, verdict } = await judge(tx, {
+      input,
+      explained,
+      compared,
+      expectsFamilyMatch: subject.request.expectsFamilyMatch,
     });
-    const runId = newId("run");
-    await tx
-      .update(screeningRuns)
-      .set({ supersededBy: runId })
-      .where(and(eq(screeningRuns.recordingId, input.recordingId), isNull(screeningRuns.supersededBy)));
-    const run = {
-      id: runId,
-      recordingId: input.recordingId,
-      engineVersion: input.engineVersion,
-      seqSearched: input.seqSearched,
-      seqAdmitted: subject.seq,
-      recordingsCompared: compared,
-      hoursCompared: input.hoursCompared,
-      thresholds: input.thresholds,
-      outcome: verdict.outcome,
-      outcomeWords: verdict.words.slice(0, 500),
-      startedAt: input.startedAt,
-      finishedAt: now,
-    };
-    await tx.insert(screeningRuns).values(run);
+    const run = await replaceRun(tx, { input, seqAdmitted: subject.seq, compared, verdict, now });
     await writeHits(tx, {
-      runId,
+      runId: run.id,
       recordingId: input.recordingId,
       hits: explained,
       references: facts.references,
@@ -159,10 +118,10 @@ export const admitRecording = command({
     await enqueue(
       tx,
       "delivery.afterScreening",
-      { recordingId: input.recordingId, runId },
-      { key: runId, priority: 15 },
+      { recordingId: input.recordingId, runId: run.id },
+      { key: run.id, priority: 15 },
     );
-    return { runId, outcome: verdict.outcome };
+    return { runId: run.id, outcome: verdict.outcome };
   },
   audit: ({ input, result, subject }) => ({
     subject: input.recordingId,
@@ -170,6 +129,80 @@ export const admitRecording = command({
     detail: result === AGAIN ? { again: true } : { ...result },
   }),
 });
+
+/** What the fingerprints at rest allow to be said, and what the hits then add up to. */
+async function judge(
+  tx: Tx,
+  args: {
+    input: AdmitRecording;
+    explained: readonly ExplainedHit[];
+    compared: number;
+    expectsFamilyMatch: boolean;
+  },
+) {
+  const { input, explained } = args;
+  const prints = await tx
+    .select({
+      channel: recordingFingerprints.channel,
+      comparable: recordingFingerprints.comparable,
+      notComparable: recordingFingerprints.notComparable,
+      durationS: recordingFingerprints.durationS,
+      contentS: recordingFingerprints.contentS,
+    })
+    .from(recordingFingerprints)
+    .where(
+      and(
+        eq(recordingFingerprints.subjectId, input.recordingId),
+        eq(recordingFingerprints.engineVersion, input.engineVersion),
+      ),
+    );
+  const mid = prints.find((row) => row.channel === "mid");
+  if (!mid) throw new Bug(`${input.recordingId} is admitted without a fingerprint`);
+  const comparable = prints.some((row) => row.comparable);
+  const familyMatchMissing =
+    args.expectsFamilyMatch && comparable && !explained.some((hit) => hit.explainedBy === "family");
+  const verdict = outcomeOf(explained, {
+    comparable,
+    reason: reasonOf(mid),
+    recordingsCompared: args.compared,
+    familyMatchMissing,
+  });
+  return { prints, mid, verdict };
+}
+
+/** A run is superseded, never overwritten. */
+async function replaceRun(
+  tx: Tx,
+  args: {
+    input: AdmitRecording;
+    seqAdmitted: number;
+    compared: number;
+    verdict: ReturnType<typeof outcomeOf>;
+    now: Date;
+  },
+) {
+  const { input, verdict } = args;
+  const run = {
+    id: newId("run"),
+    recordingId: input.recordingId,
+    engineVersion: input.engineVersion,
+    seqSearched: input.seqSearched,
+    seqAdmitted: args.seqAdmitted,
+    recordingsCompared: args.compared,
+    hoursCompared: input.hoursCompared,
+    thresholds: input.thresholds,
+    outcome: verdict.outcome,
+    outcomeWords: verdict.words.slice(0, 500),
+    startedAt: input.startedAt,
+    finishedAt: args.now,
+  };
+  await tx
+    .update(screeningRuns)
+    .set({ supersededBy: run.id })
+    .where(and(eq(screeningRuns.recordingId, input.recordingId), isNull(screeningRuns.supersededBy)));
+  await tx.insert(screeningRuns).values(run);
+  return run;
+}
 
 /** The number was taken to hold the lock; nothing was admitted, so it is given back and the log stays gapless. */
 async function undoSequence(tx: Tx, seq: number): Promise<typeof AGAIN> {
