@@ -17,10 +17,12 @@ export {
 } from "./for-rooms";
 export { FoundHit, FoundPassage } from "./found";
 export { changeReference } from "./hold-reference";
+export { listRegisters, type Registers } from "./list-registers";
 export { registerEntry } from "./register-entry";
 export { registerLoop } from "./register-loop";
 export { requestScreening, type ScreeningRequest } from "./request-screening";
 export { readScreeningSubject } from "./screen-recording";
+export { type CutPiece, getScreeningOfCue, type ScreeningOfCue } from "./screening-of-cue";
 export {
   EXPLANATIONS,
   type Explanation,
