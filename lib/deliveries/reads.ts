@@ -169,6 +169,8 @@ export const getDelivery = query({
       ...standingOf(delivery, versions, writers),
       draft: delivery.draft,
       isDeliverer: delivery.delivererId === actor.personId,
+      /** Who may play the files themselves: the deliverer and the library. */
+      mayHear: maySee(actor, delivery),
       /** Papers are for who handed them in and for the library, not for every writer. */
       papers: maySee(actor, delivery) ? await papersOfDelivery(reader, delivery.id) : [],
       mayJudge:

@@ -1,3 +1,4 @@
+import { versionRoleLabel } from "@/lib/catalogue/version-roles";
 import type { DeliveryRow } from "./own-delivery";
 import { STANDINGS, type Standing } from "./states";
 
@@ -55,14 +56,27 @@ export function standingOf(
   return { standing: "clear", words: "Screened and accepted; it is being listed." };
 }
 
-function draftWords(versions: readonly { state: string }[]): string {
+const SMALL = ["No", "One", "Two", "Three", "Four", "Five", "Six", "Seven", "Eight", "Nine"];
+const counted = (count: number, one: string, many: string) =>
+  `${SMALL[count] ?? count} ${count === 1 ? one : many}`;
+
+function draftWords(versions: readonly { state: string; versionRole: string }[]): string {
   if (versions.length === 0) return "A draft with no file yet.";
-  const measured = versions.filter((version) => version.state === "measured").length;
-  const back = versions.filter(
-    (version) => version.state === "returned" || version.state === "unreadable",
-  ).length;
-  const files = `${measured} of ${versions.length} ${versions.length === 1 ? "file passes" : "files pass"} the checks so far.`;
-  return back === 0 ? files : `${files} ${back === 1 ? "One needs" : `${back} need`} a new file from you.`;
+  const passing = versions.filter((version) => version.state === "measured").length;
+  const back = versions.filter((version) => version.state === "returned" || version.state === "unreadable");
+  const waiting = versions.length - passing - back.length;
+  const first = back[0];
+  const parts = [
+    passing > 0
+      ? counted(passing, "version passes the checks so far.", "versions pass the checks so far.")
+      : null,
+    first && back.length === 1
+      ? `The ${versionRoleLabel(first.versionRole)} needs a new file from you.`
+      : null,
+    back.length > 1 ? counted(back.length, "", "versions need a new file from you.") : null,
+    waiting > 0 ? counted(waiting, "file is being measured.", "files are being measured.") : null,
+  ];
+  return parts.filter((part) => part !== null).join(" ");
 }
 
 function sentence(worst: Standing, versions: readonly { state: string; versionRole: string }[]): string {

@@ -102,6 +102,8 @@ async function groupForDeliverer(
     passages: hits.flatMap((hit) =>
       hit.passages.map((passage) => ({
         id: passage.id,
+        /** The deliverer's own recording, in which the times lie. */
+        recordingId: hit.recordingId,
         startS: passage.startS,
         endS: passage.endS,
         speed: passage.speed,

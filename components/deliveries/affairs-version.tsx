@@ -1,0 +1,123 @@
+"use client";
+
+import { Mark } from "@/components/ui/mark";
+import { Problem } from "@/components/ui/problem";
+import { CertificatePart } from "./certificate-part";
+import { AUDIO_FILES, FileButton } from "./file-button";
+import { PassagePlays } from "./passage-plays";
+import { UploadRow } from "./upload-row";
+import type { Uploads } from "./use-uploads";
+import { VersionChecks } from "./version-checks";
+import { VersionContour } from "./version-contour";
+import { VersionProgress } from "./version-progress";
+import { factsLine, markOfState, roleHead } from "./version-words";
+import { checksOf, type DeliveryOnWire, type VersionOnWire } from "./wire";
+
+interface AffairsVersionProps {
+  delivery: DeliveryOnWire;
+  version: VersionOnWire;
+  uploads: Uploads;
+  ending: string | null;
+  scaleS: number;
+  zone: string;
+  isMain: boolean;
+}
+
+const isTechnical = (version: VersionOnWire) =>
+  version.state === "returned" && checksOf(version).some((check) => check.verdict === "return");
+
+function headOf(version: VersionOnWire): string {
+  if (isTechnical(version)) return "needs a new file from you.";
+  if (version.state === "returned") return "was sent back to you.";
+  if (version.state === "unreadable") return "cannot be read.";
+  return version.words.charAt(0).toLowerCase() + version.words.slice(1);
+}
+
+/** One version after signing: its shape and sentence, what is happening to it now, what it matches and why that is well. */
+export function AffairsVersion(props: AffairsVersionProps) {
+  const { delivery, version, uploads, ending, scaleS, zone, isMain } = props;
+  const name = roleHead(version.versionRole);
+  const needsFile = version.state === "returned" || version.state === "unreadable";
+  const replacement = uploads.running.find((upload) => upload.replaces === version.id);
+  const facts = factsLine(version);
+  const working = version.state === "arrived" || version.state === "screening";
+  return (
+    <li
+      className="grid grid-cols-[1.4375rem_minmax(0,1fr)] border-b border-line py-3.5"
+      id={version.recordingId ?? version.id}
+    >
+      <Mark className="mt-[0.22em]" kind={markOfState(version.state)} />
+      <div className="min-w-0">
+        {working ? (
+          <VersionProgress version={version} />
+        ) : (
+          <p className={markOfState(version.state) === "warn" ? "text-magenta" : "max-w-measure"}>
+            <b className="font-strong">{name}</b>: {headOf(version)}
+          </p>
+        )}
+        {version.contour && (
+          <div className="mt-2">
+            <VersionContour
+              ending={ending}
+              playable={delivery.mayHear}
+              scaleS={scaleS}
+              title={delivery.title}
+              version={version}
+            />
+          </div>
+        )}
+        {facts && <p className="mt-1.5 text-small text-ink-soft">{facts}</p>}
+        {version.state === "unreadable" && <Problem className="mt-2">{version.words}</Problem>}
+        {version.state === "returned" && !isTechnical(version) && (
+          <p className="mt-2 max-w-measure">{version.words}</p>
+        )}
+        {isTechnical(version) && <VersionChecks version={version} />}
+        <Matches delivery={delivery} version={version} />
+        {needsFile && delivery.isDeliverer && (
+          <div className="mt-3">
+            {replacement ? (
+              <UploadRow upload={replacement} uploads={uploads} />
+            ) : (
+              <FileButton
+                accept={AUDIO_FILES}
+                kind={isMain ? "main" : "plain"}
+                onFiles={(files) => uploads.add(files.slice(0, 1), version.id)}
+                wide={isMain}
+              >
+                {`Replace the ${name.toLowerCase()}`}
+              </FileButton>
+            )}
+          </div>
+        )}
+        <CertificatePart version={version} zone={zone} />
+      </div>
+    </li>
+  );
+}
+
+/** Every match with its places in the deliverer's own file, and how it is explained. */
+function Matches({ delivery, version }: { delivery: DeliveryOnWire; version: VersionOnWire }) {
+  const told = version.matches.filter((match) => match.explainedBy !== "family");
+  if (told.length === 0) return null;
+  return (
+    <ul className="mt-2 space-y-2">
+      {told.map((match, index) => (
+        // biome-ignore lint/suspicious/noArrayIndexKey: matches have no name of their own on this side
+        <li key={index}>
+          <p className="max-w-measure">
+            {match.explanation ??
+              `Part of it lines up with another recording (${match.relation}). Nothing is decided by that.`}
+          </p>
+          <div className="mt-0.5 text-small">
+            <PassagePlays
+              passages={match.passages}
+              playable={delivery.mayHear}
+              title={delivery.title}
+              version={version}
+            />
+          </div>
+        </li>
+      ))}
+    </ul>
+  );
+}
