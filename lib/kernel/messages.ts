@@ -14,7 +14,12 @@ export const messages = {
   "delivery.tryListing": z.object({ deliveryId: id }),
   "delivery.remindWriters": z.object({ slot: z.string() }),
   "screening.screen": z.object({ recordingId: id }),
-  "screening.fingerprintReported": z.object({ reportedWorkId: id, fileKey: z.string() }),
+  "screening.fingerprintReported": z.object({
+    reportedWorkId: id,
+    fileKey: z.string(),
+    turn: z.int().min(0),
+  }),
+  "screening.dropReported": z.object({ reportedWorkId: id, turn: z.int().min(0) }),
   "screening.fingerprintLoop": z.object({ loopId: id, fileKey: z.string() }),
   "catalogue.renderPreview": z.object({ recordingId: id }),
   "catalogue.renderMaster": z.object({ recordingId: id }),

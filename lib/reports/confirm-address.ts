@@ -36,15 +36,13 @@ export const confirmReporterAddress = command({
   run: async ({ tx, input, now }) => {
     const noticeId = await useTicket(tx, input.secret, "confirm address");
     await tx.update(notices).set({ emailConfirmedAt: now }).where(eq(notices.id, noticeId));
-    await tx
-      .insert(noticeEvents)
-      .values({
-        id: newId("eve"),
-        noticeId,
-        words: "The address is confirmed.",
-        visibleToReporter: true,
-        at: now,
-      });
+    await tx.insert(noticeEvents).values({
+      id: newId("eve"),
+      noticeId,
+      words: "The address is confirmed.",
+      visibleToReporter: true,
+      at: now,
+    });
     const [notice] = await tx
       .select({ claim: notices.claim, receiptNumber: notices.receiptNumber })
       .from(notices)
@@ -52,14 +50,12 @@ export const confirmReporterAddress = command({
     if (!notice?.claim.hasRecording)
       return { noticeId, receiptNumber: notice?.receiptNumber ?? "", uploadTicket: null };
     const uploadTicket = newSecret();
-    await tx
-      .insert(tickets)
-      .values({
-        tokenHash: blindHash(uploadTicket, "ticket"),
-        purpose: "confidential recording",
-        subjectId: noticeId,
-        expiresAt: new Date(systemNow().getTime() + CONFIRM_HOURS * 3_600_000),
-      });
+    await tx.insert(tickets).values({
+      tokenHash: blindHash(uploadTicket, "ticket"),
+      purpose: "confidential recording",
+      subjectId: noticeId,
+      expiresAt: new Date(systemNow().getTime() + CONFIRM_HOURS * 3_600_000),
+    });
     return { noticeId, receiptNumber: notice.receiptNumber, uploadTicket };
   },
   audit: ({ result }) => ({ subject: result.noticeId }),
@@ -71,8 +67,8 @@ export const admitConfidential = command({
   who: EVERYONE,
   input: z.object({
     ticket: z.string().min(10).max(60),
-    sizeBytes: z.int().min(1),
-    files: z.literal(1, { error: "One recording a report." }),
+    sizeBytes: z.int().min(1, "This file holds no bytes."),
+    files: z.int().min(1).max(1, "One recording a report."),
   }),
   authorise: open("whoever has the one-use ticket"),
   run: async ({ tx, input }) => {
@@ -100,15 +96,13 @@ export const confidentialArrived = command({
       .update(notices)
       .set({ confidentialKey: input.fileKey, version: subject.version + 1 })
       .where(eq(notices.id, subject.id));
-    await tx
-      .insert(noticeEvents)
-      .values({
-        id: newId("eve"),
-        noticeId: subject.id,
-        words: "A confidential recording arrived. Only the marketplace's moderators hear it.",
-        visibleToReporter: true,
-        at: now,
-      });
+    await tx.insert(noticeEvents).values({
+      id: newId("eve"),
+      noticeId: subject.id,
+      words: "A confidential recording arrived. Only the marketplace's moderators hear it.",
+      visibleToReporter: true,
+      at: now,
+    });
     return null;
   },
   audit: ({ input }) => ({ subject: input.noticeId }),

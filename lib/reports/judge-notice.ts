@@ -1,7 +1,9 @@
 import { eq } from "drizzle-orm";
+import { z } from "zod";
 import type { Tx } from "@/db/client";
 import { noticeEvents, notices } from "@/db/schema/reports";
 import { familyById, placeHold } from "@/lib/catalogue";
+import type { ActorOf } from "@/lib/kernel/actor";
 import { addDays, civilDateIn, endOfDay, sameDayOrLast } from "@/lib/kernel/calendar";
 import { env } from "@/lib/kernel/env";
 import { Forbidden, NotFound, Precondition } from "@/lib/kernel/errors";
@@ -19,17 +21,7 @@ export const judgeNotice = command({
   name: "reports.judgeNotice",
   who: ["moderator"],
   input: JudgeNotice,
-  authorise: async ({ tx, actor, input }) => {
-    if (actor.libraryId !== null)
-      throw new Forbidden("Reported works belong to the marketplace's moderators.");
-    const [notice] = await tx.select().from(notices).where(eq(notices.id, input.noticeId)).for("update");
-    if (!notice) throw new NotFound();
-    await tx
-      .update(notices)
-      .set({ version: notice.version + 1 })
-      .where(eq(notices.id, notice.id));
-    return notice;
-  },
+  authorise: ({ tx, actor, input }) => lockNotice(tx, actor, input.noticeId),
   run: async ({ tx, actor, input, subject: notice, now }) => {
     if (notice.state === "decided") throw new Precondition("This report has been decided.");
     if (input.decision === "ask for more") {
@@ -91,21 +83,45 @@ export const judgeNotice = command({
   }),
 });
 
+/** A person begins to read a report; whoever sent it sees so by its number. */
+export const takeNotice = command({
+  name: "reports.takeNotice",
+  who: ["moderator"],
+  input: z.object({ noticeId: z.string() }),
+  authorise: ({ tx, actor, input }) => lockNotice(tx, actor, input.noticeId),
+  run: async ({ tx, actor, subject: notice, now }) => {
+    if (notice.state !== "received") return null;
+    await tx.update(notices).set({ state: "under review" }).where(eq(notices.id, notice.id));
+    await say(tx, notice, { words: "A person is reading it.", personId: actor.personId, now });
+    return null;
+  },
+  audit: ({ subject }) => ({ subject: subject.id }),
+});
+
+async function lockNotice(tx: Tx, actor: ActorOf<"moderator">, noticeId: string): Promise<Notice> {
+  if (actor.libraryId !== null) throw new Forbidden("Reported works belong to the marketplace's moderators.");
+  const [notice] = await tx.select().from(notices).where(eq(notices.id, noticeId)).for("update");
+  if (!notice) throw new NotFound();
+  await tx
+    .update(notices)
+    .set({ version: notice.version + 1 })
+    .where(eq(notices.id, notice.id));
+  return notice;
+}
+
 async function say(
   tx: Tx,
   notice: Notice,
   event: { words: string; personId: string; now: Date },
 ): Promise<void> {
-  await tx
-    .insert(noticeEvents)
-    .values({
-      id: newId("eve"),
-      noticeId: notice.id,
-      words: event.words.slice(0, 500),
-      visibleToReporter: true,
-      personId: event.personId,
-      at: event.now,
-    });
+  await tx.insert(noticeEvents).values({
+    id: newId("eve"),
+    noticeId: notice.id,
+    words: event.words.slice(0, 500),
+    visibleToReporter: true,
+    personId: event.personId,
+    at: event.now,
+  });
 }
 
 async function tell(

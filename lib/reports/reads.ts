@@ -1,12 +1,16 @@
-import { asc, desc, eq } from "drizzle-orm";
+import { asc, desc, eq, ne } from "drizzle-orm";
 import { z } from "zod";
 import { noticeEvents, notices, reportedWorks } from "@/db/schema/reports";
 import { familyById } from "@/lib/catalogue";
 import { EVERYONE } from "@/lib/kernel/actor";
+import { addBusinessDays, civilDateIn, endOfDay } from "@/lib/kernel/calendar";
 import { isMod3736 } from "@/lib/kernel/check-characters";
 import { Forbidden, Invalid, NotFound } from "@/lib/kernel/errors";
 import { openField } from "@/lib/kernel/field-crypto";
+import { UK_HOLIDAYS } from "@/lib/kernel/holidays";
 import { query } from "@/lib/kernel/verb";
+import type { ClaimOfNotice } from "./schemas";
+import { TRIAGE_WORKING_DAYS } from "./states";
 
 /** Status by receipt number, without an account: what happened and when; no name, no address, no library's data. */
 export const getNoticeStatus = query({
@@ -51,22 +55,43 @@ const marketplaceOnly = async ({ actor }: { actor: { libraryId: string | null } 
   return null;
 };
 
+/** The first reading is due at the end of the next working day. */
+const firstReadingBy = (receivedAt: Date) =>
+  endOfDay(
+    addBusinessDays(civilDateIn(receivedAt, "Europe/London"), TRIAGE_WORKING_DAYS, UK_HOLIDAYS),
+    "Europe/London",
+  );
+
+/** Reports and the blocklist: what is open first, oldest first. */
 export const listReports = query({
   name: "reports.listReports",
   who: ["moderator"],
   input: z.object({}),
   authorise: marketplaceOnly,
   run: async ({ reader }) => {
-    const rows = await reader.select().from(notices).orderBy(desc(notices.receivedAt)).limit(300);
+    const open = await reader
+      .select()
+      .from(notices)
+      .where(ne(notices.state, "decided"))
+      .orderBy(asc(notices.receivedAt))
+      .limit(300);
+    const decided = await reader
+      .select()
+      .from(notices)
+      .where(eq(notices.state, "decided"))
+      .orderBy(desc(notices.decidedAt))
+      .limit(300);
     const works = await reader.select().from(reportedWorks).orderBy(asc(reportedWorks.code)).limit(500);
     return {
-      notices: rows.map((row) => ({
+      notices: [...open, ...decided].map((row) => ({
         id: row.id,
         receiptNumber: row.receiptNumber,
         workTitle: String(row.claim.workTitle ?? ""),
         state: row.state,
         outcome: row.outcome,
         receivedAt: row.receivedAt,
+        dueAt: firstReadingBy(row.receivedAt),
+        decidedAt: row.decidedAt,
         addressConfirmed: row.emailConfirmedAt !== null,
         hasRecording: row.confidentialKey !== null,
       })),
@@ -113,6 +138,17 @@ export const getReport = query({
       })
       .from(notices)
       .where(eq(notices.emailHash, subject.emailHash));
+    const [work] = subject.reportedWorkId
+      ? await reader
+          .select({
+            id: reportedWorks.id,
+            code: reportedWorks.code,
+            level: reportedWorks.level,
+            fingerprinted: reportedWorks.fingerprinted,
+          })
+          .from(reportedWorks)
+          .where(eq(reportedWorks.id, subject.reportedWorkId))
+      : [];
     const family = subject.targetFamilyId ? await familyById(reader, subject.targetFamilyId) : null;
     return {
       id: subject.id,
@@ -121,7 +157,10 @@ export const getReport = query({
       outcome: subject.outcome,
       reasons: subject.reasons,
       receivedAt: subject.receivedAt,
-      claim: subject.claim,
+      dueAt: firstReadingBy(subject.receivedAt),
+      decidedAt: subject.decidedAt,
+      work: work ?? null,
+      claim: subject.claim as unknown as ClaimOfNotice,
       contact: JSON.parse(openField(subject.contact.toString(), `notice:${subject.id}`)) as {
         name: string;
         capacity: string;

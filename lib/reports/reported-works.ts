@@ -9,9 +9,8 @@ import { Conflict, Forbidden, NotFound } from "@/lib/kernel/errors";
 import { newId } from "@/lib/kernel/ids";
 import { isDuplicateKey } from "@/lib/kernel/transaction";
 import { command } from "@/lib/kernel/verb";
+import { LEVELS, SetEvidenceLevel } from "./schemas";
 import { CONCERNS, type EvidenceLevel, REVIEW_MONTHS } from "./states";
-
-const LEVELS = ["claimed", "supported", "adjudicated"] as const;
 
 interface Entry {
   code: string;
@@ -40,7 +39,7 @@ async function insertEntry(tx: Tx, entry: Entry): Promise<string> {
     await enqueue(
       tx,
       "screening.fingerprintReported",
-      { reportedWorkId: id, fileKey: entry.fileKey },
+      { reportedWorkId: id, fileKey: entry.fileKey, turn: 0 },
       { key: id, priority: 10 },
     );
   return id;
@@ -111,14 +110,20 @@ export const addReportedWork = command({
   }),
 });
 
+async function dropFromIndex(tx: Tx, work: { id: string; version: number }): Promise<void> {
+  await enqueue(
+    tx,
+    "screening.dropReported",
+    { reportedWorkId: work.id, turn: work.version },
+    { key: `${work.id}:${work.version}`, priority: 10 },
+  );
+}
+
+/** REPORTS-4: an entry lowered to claimed leaves the index; one raised from it joins. */
 export const setEvidenceLevel = command({
   name: "reports.setEvidenceLevel",
   who: ["moderator"],
-  input: z.object({
-    reportedWorkId: z.string(),
-    level: z.enum(LEVELS),
-    words: z.string().trim().min(20, "What the level rests on, in a sentence.").max(1000),
-  }),
+  input: SetEvidenceLevel,
   authorise: async ({ tx, actor, input }) => {
     if (actor.libraryId !== null)
       throw new Forbidden("Reported works belong to the marketplace's moderators.");
@@ -131,18 +136,24 @@ export const setEvidenceLevel = command({
     return row;
   },
   run: async ({ tx, input, subject }) => {
+    const isHeldBySound = input.level !== "claimed";
     await tx
       .update(reportedWorks)
-      .set({ level: input.level, version: subject.version + 1 })
+      .set({
+        level: input.level,
+        version: subject.version + 1,
+        fingerprinted: isHeldBySound && subject.fingerprinted,
+      })
       .where(eq(reportedWorks.id, subject.id));
-    if (input.level !== "claimed" && subject.fileKey && !subject.fingerprinted) {
+    if (isHeldBySound && subject.fileKey && !subject.fingerprinted) {
       await enqueue(
         tx,
         "screening.fingerprintReported",
-        { reportedWorkId: subject.id, fileKey: subject.fileKey },
+        { reportedWorkId: subject.id, fileKey: subject.fileKey, turn: subject.version },
         { key: `${subject.id}:${subject.version}`, priority: 10 },
       );
     }
+    if (!isHeldBySound && subject.fingerprinted) await dropFromIndex(tx, subject);
     return null;
   },
   audit: ({ input }) => ({
@@ -165,10 +176,13 @@ export const recordFingerprinted = command({
     return row;
   },
   run: async ({ tx, input, subject }) => {
+    // Lowered while its recording was being read: what has just joined the index leaves it again.
+    const isHeldBySound = subject.level !== "claimed";
     await tx
       .update(reportedWorks)
-      .set({ fingerprinted: input.comparable, version: subject.version + 1 })
+      .set({ fingerprinted: isHeldBySound && input.comparable, version: subject.version + 1 })
       .where(eq(reportedWorks.id, subject.id));
+    if (!isHeldBySound) await dropFromIndex(tx, subject);
     return null;
   },
   audit: ({ input }) => ({ subject: input.reportedWorkId, detail: { comparable: input.comparable } }),

@@ -14,6 +14,9 @@ const identifier = (check: (value: string) => { ok: boolean; message?: string })
       const result = check(value);
       if (!result.ok) context.addIssue({ code: "custom", message: result.message ?? "not an identifier" });
     });
+const TIME = "A time such as 0:20, minutes and seconds.";
+const seconds = z.number({ error: TIME }).min(0, TIME).max(86_400, TIME).nullable().default(null);
+export const LEVELS = ["claimed", "supported", "adjudicated"] as const;
 const grounds = Object.keys(GROUNDS) as [Ground, ...Ground[]];
 
 /** What a report holds: who, what work, where, why, good faith, accuracy and authority. */
@@ -31,8 +34,8 @@ export const SubmitNotice = z.object({
   iswc: identifier(checkIswc).default(""),
   release: z.string().trim().max(500).default(""),
   where: text(3, 500, "Where it is: a catalogue number such as SM0009, or the address of the page."),
-  fromS: z.number().min(0).nullable().default(null),
-  toS: z.number().min(0).nullable().default(null),
+  fromS: seconds,
+  toS: seconds,
   grounds: z.array(z.enum(grounds)).min(1, "At least one of these."),
   why: text(30, 4000, "In a few sentences: why you think this is yours."),
   hasRecording: z.boolean().default(false),
@@ -42,6 +45,19 @@ export const SubmitNotice = z.object({
 });
 export type SubmitNotice = z.output<typeof SubmitNotice>;
 export type SubmitNoticeInput = z.input<typeof SubmitNotice>;
+
+/** What is kept of a report in the clear: everything but who sent it. */
+export type ClaimOfNotice = Omit<
+  SubmitNotice,
+  "name" | "capacity" | "email" | "countryCode" | "postal" | "signedName"
+>;
+
+export const SetEvidenceLevel = z.object({
+  reportedWorkId: z.string(),
+  level: z.enum(LEVELS),
+  words: text(20, 1000, "What the level rests on, in a sentence."),
+});
+export type SetEvidenceLevel = z.output<typeof SetEvidenceLevel>;
 
 export const JudgeNotice = z.discriminatedUnion("decision", [
   z.object({
@@ -58,7 +74,7 @@ export const JudgeNotice = z.discriminatedUnion("decision", [
     noticeId: z.string(),
     decision: z.literal("accept"),
     reasons: text(60, 3000, "At least two sentences that both sides understand."),
-    level: z.enum(["claimed", "supported", "adjudicated"]),
+    level: z.enum(LEVELS, { error: "How sure is it?" }),
     holdTarget: z.boolean(),
   }),
 ]);

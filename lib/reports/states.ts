@@ -29,5 +29,7 @@ export const ACCURACY_TEXT =
 export const NOTICES_PER_DAY = 5;
 export const CONFIDENTIAL_LIMIT_BYTES = 300 * 2 ** 20;
 export const CONFIRM_HOURS = 48;
+/** Common practice: a report gets its first reading within one working day. */
+export const TRIAGE_WORKING_DAYS = 1;
 /** A reported work is looked at again after this. */
 export const REVIEW_MONTHS = 12;

@@ -17,11 +17,11 @@ import { newId, newSecret } from "@/lib/kernel/ids";
 import { command, open } from "@/lib/kernel/verb";
 import { enqueueMail } from "@/lib/mail";
 import { SubmitNotice } from "./schemas";
-import { CONFIRM_HOURS, NOTICES_PER_DAY } from "./states";
+import { CONFIRM_HOURS, NOTICES_PER_DAY, TRIAGE_WORKING_DAYS } from "./states";
 
 const LETTERS = "ABCDEFGHJKMNPQRSTVWXYZ23456789";
 
-/** "RN-2026-K7Q2XM-4": eight characters of chance and a check character, so that a number cannot be guessed. */
+/** "RN-2026-K7Q2XMWB-4": eight characters of chance and a check character, so that a number cannot be guessed. */
 function receiptNumber(year: number): string {
   const chance = Array.from(randomBytes(8), (byte) => LETTERS[byte % LETTERS.length]).join("");
   return `RN-${year}-${chance}-${mod3736(`RN${year}${chance}`)}`;
@@ -88,7 +88,7 @@ async function sendReceipt(
   args: { id: string; receipt: string; email: string; workTitle: string; now: Date },
 ): Promise<void> {
   const nextNewsBy = endOfDay(
-    addBusinessDays(civilDateIn(args.now, "Europe/London"), 1, UK_HOLIDAYS),
+    addBusinessDays(civilDateIn(args.now, "Europe/London"), TRIAGE_WORKING_DAYS, UK_HOLIDAYS),
     "Europe/London",
   );
   const url = `${env.SITE_URL}/report/${args.receipt}`;
@@ -108,14 +108,12 @@ async function sendReceipt(
   });
   const secret = newSecret();
   const expiresAt = new Date(systemNow().getTime() + CONFIRM_HOURS * 3_600_000);
-  await tx
-    .insert(tickets)
-    .values({
-      tokenHash: blindHash(secret, "ticket"),
-      purpose: "confirm address",
-      subjectId: args.id,
-      expiresAt,
-    });
+  await tx.insert(tickets).values({
+    tokenHash: blindHash(secret, "ticket"),
+    purpose: "confirm address",
+    subjectId: args.id,
+    expiresAt,
+  });
   await enqueueMail(tx, {
     toAddress: args.email,
     template: "report-confirm-address",

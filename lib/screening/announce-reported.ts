@@ -6,12 +6,11 @@ import { command, open } from "@/lib/kernel/verb";
 export const announceReported = command({
   name: "screening.announceReported",
   who: ["system"],
-  input: z.object({ reportedWorkId: z.string(), comparable: z.boolean() }),
+  input: z.object({ reportedWorkId: z.string(), comparable: z.boolean(), turn: z.int().min(0) }),
   authorise: open("only the screening worker fingerprints"),
   run: async ({ tx, input }) => {
-    await enqueue(tx, "reports.afterFingerprint", input, {
-      key: `${input.reportedWorkId}:${input.comparable}`,
-    });
+    const { turn, ...heard } = input;
+    await enqueue(tx, "reports.afterFingerprint", heard, { key: `${input.reportedWorkId}:${turn}` });
     return null;
   },
   audit: ({ input }) => ({ subject: input.reportedWorkId, detail: { comparable: input.comparable } }),

@@ -10,7 +10,12 @@ import type { SubjectKind } from "./states";
 
 const actor = system("screening");
 
-async function fingerprintReference(subjectKind: SubjectKind, subjectId: string, fileKey: string) {
+async function fingerprintReference(
+  subjectKind: SubjectKind,
+  subjectId: string,
+  fileKey: string,
+  turn = 0,
+): Promise<boolean> {
   const result = await withLocalCopy(fileKey, "reference.wav", (path) =>
     screeningEngine().fingerprintFile({ path, isLoop: subjectKind === "loop" }),
   );
@@ -24,7 +29,7 @@ async function fingerprintReference(subjectKind: SubjectKind, subjectId: string,
   await changeReference(
     actor,
     { change: "add", subjectKind, subjectId },
-    { operationId: `reference:${subjectKind}:${subjectId}:${fileKey}`.slice(0, 120) },
+    { operationId: `reference:${subjectId}:${turn}:${fileKey}`.slice(0, 120) },
   );
   return result.rows.some((row) => row.comparable);
 }
@@ -47,12 +52,22 @@ export const screeningHandlers = defineHandlers({
   "screening.fingerprintReported": {
     heavy: true,
     timeoutS: 1800,
-    handle: async ({ reportedWorkId, fileKey }) => {
-      const comparable = await fingerprintReference("reported", reportedWorkId, fileKey);
+    handle: async ({ reportedWorkId, fileKey, turn }) => {
+      const comparable = await fingerprintReference("reported", reportedWorkId, fileKey, turn);
       await announceReported(
         actor,
-        { reportedWorkId, comparable },
-        { operationId: `reported:${reportedWorkId}:${fileKey}`.slice(0, 120) },
+        { reportedWorkId, comparable, turn },
+        { operationId: `reported:${reportedWorkId}:${turn}:${fileKey}`.slice(0, 120) },
+      );
+    },
+  },
+  "screening.dropReported": {
+    timeoutS: 60,
+    handle: async ({ reportedWorkId, turn }) => {
+      await changeReference(
+        actor,
+        { change: "remove", subjectKind: "reported", subjectId: reportedWorkId },
+        { operationId: `drop:${reportedWorkId}:${turn}` },
       );
     },
   },

@@ -1,6 +1,7 @@
 import { admitUpload, fileArrived, paperArrived } from "@/lib/deliveries";
 import { system } from "@/lib/kernel/actor";
-import { Invalid, Precondition, Unauthenticated } from "@/lib/kernel/errors";
+import { Invalid, Unauthenticated } from "@/lib/kernel/errors";
+import { admitConfidential, confidentialArrived } from "@/lib/reports";
 import { makeUploadHandlers, type UploadGate } from "@/lib/uploads";
 import { viewer } from "@/lib/web";
 
@@ -67,11 +68,25 @@ const paper: UploadGate = {
   },
 };
 
-const notOpen = async (): Promise<never> => {
-  throw new Precondition(
-    "Confidential recordings of a notice cannot be sent here yet: this gate is not open.",
-  );
+/** The one-use ticket travels as the subject; it is spent when the recording is announced. */
+const confidential: UploadGate = {
+  admit: async ({ subjectId, files }) => {
+    const { actor } = await viewer();
+    const { noticeId } = await admitConfidential(actor, {
+      ticket: subjectId,
+      files: files.length,
+      sizeBytes: Math.max(0, ...files.map((file) => file.sizeBytes)),
+    });
+    return { context: { noticeId } };
+  },
+  arrived: async (file, { noticeId = "" }) => {
+    await confidentialArrived(
+      store,
+      { noticeId, fileKey: file.key },
+      { operationId: `confidential:${file.key}`.slice(0, 120) },
+    );
+    return {};
+  },
 };
-const confidential: UploadGate = { admit: notOpen, arrived: notOpen };
 
 export const { GET, POST } = makeUploadHandlers({ master, paper, confidential });
