@@ -29,6 +29,7 @@ export {
   type Checked,
   type CheckedFile,
   type CheckedLicence,
+  getPublicFile,
   setWithheld,
   untilWords,
   verifyByProof,

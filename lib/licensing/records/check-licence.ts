@@ -1,6 +1,7 @@
 import { eq, sql } from "drizzle-orm";
 import type { Reader } from "@/db/client";
 import { licenceRecords, licenceVisibility } from "@/db/schema/licensing";
+import { recordingById } from "@/lib/catalogue";
 import { EVERYONE } from "@/lib/kernel/actor";
 import { type CivilDate, civilDateIn, formatCivilDate } from "@/lib/kernel/calendar";
 import { Forbidden, NotFound } from "@/lib/kernel/errors";
@@ -10,6 +11,7 @@ import { command, open, query } from "@/lib/kernel/verb";
 import type { Disclosed } from "../record/confidential";
 import { type InForce, inForceOn, type LicenceTerm } from "../record/in-force";
 import type { LicenceRecord, StatusEvent } from "../record/schema";
+import type { LicenceFile } from "../record/sign-record";
 import { type Verification, verifyRecord } from "../record/verify-record";
 import { CheckFile, CheckProof, SetWithheld } from "../schemas";
 import { PUBLIC_FIELDS, type Withholdable } from "../states";
@@ -39,6 +41,8 @@ export interface CheckedLicence {
   screening: LicenceRecord["screening"];
   history: StatusEvent[];
   seal: { keyId: string; sha256: string; day: string; position: number; isInPublishedLog: boolean };
+  /** The recording as delivered: its contours, packed, and its ending; null where it has none. */
+  heard: { recordingId: string; durationS: number; contour: string; ending: string } | null;
 }
 
 export interface Checked {
@@ -67,6 +71,7 @@ function licenceOf(file: {
   history: readonly StatusEvent[];
   sha256: string;
   isInPublishedLog: boolean;
+  heard: CheckedLicence["heard"];
 }): CheckedLicence {
   const { record, disclosed } = file;
   const withheld = PUBLIC_FIELDS.filter((field) => disclosed[field] === undefined);
@@ -98,6 +103,7 @@ function licenceOf(file: {
       ...record.signing.log,
       isInPublishedLog: file.isInPublishedLog,
     },
+    heard: file.heard,
   };
 }
 
@@ -123,6 +129,14 @@ function answerOf(
   };
 }
 
+async function heardIn(reader: Reader, record: LicenceRecord): Promise<CheckedLicence["heard"]> {
+  const versionId = record.cue.versions[0]?.versionId;
+  const recording = versionId ? await recordingById(reader, versionId) : null;
+  if (!recording?.contour) return null;
+  const { id, durationS, ending } = recording;
+  return { recordingId: id, durationS, ending, contour: Buffer.from(recording.contour).toString("base64") };
+}
+
 /** What is held here is verified like a file that somebody brings: the database is not believed either. */
 async function checkRow(
   reader: Reader,
@@ -138,6 +152,7 @@ async function checkRow(
     history: file.status?.statement.events ?? [],
     sha256: row.sha256,
     isInPublishedLog: file.inclusion !== null,
+    heard: await heardIn(reader, file.record),
   });
   return answerOf(verification, licence, on, now);
 }
@@ -166,6 +181,22 @@ export const verifyByProof = query({
     const row = await recordByProof(reader, parsed.code);
     return row ? checkRow(reader, row, input.on, now) : { verdict: "unknown", sentence: UNKNOWN_SENTENCE };
   },
+});
+
+/** The signed file as the public may have it: what the licensee keeps private is left out, and it still verifies. */
+export const getPublicFile = query({
+  name: "licensing.getPublicFile",
+  who: EVERYONE,
+  input: CheckProof.pick({ proof: true, address: true }),
+  authorise: async ({ reader, input }) => {
+    const parsed = parseProofCode(input.proof);
+    if (!parsed.ok) throw new NotFound(parsed.message);
+    countCheck(input.address);
+    const row = await recordByProof(reader, parsed.code);
+    if (!row) throw new NotFound(UNKNOWN_SENTENCE);
+    return row;
+  },
+  run: ({ reader, subject, now }): Promise<LicenceFile> => licenceFile(reader, subject, "public", now),
 });
 
 export interface CheckedFile {

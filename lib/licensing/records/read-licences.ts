@@ -38,7 +38,7 @@ export interface LicenceEntry {
 const value = <T>(disclosed: Disclosed, field: keyof Disclosed): T | null =>
   (disclosed[field]?.value as T | undefined) ?? null;
 
-function useWordsOf(record: LicenceRecord): string {
+function wordsOfScope(record: LicenceRecord): string {
   const { media, territory, quantity } = record.scope;
   const episodes = quantity.episodes > 1 ? `, ${quantity.episodes} episodes` : "";
   return `${media.words}, ${territory.words}${episodes}`;
@@ -67,7 +67,7 @@ export const listLicences = query({
         number: row.number,
         title: record.cue.title,
         production: value<string>(disclosed, "production.title") ?? "",
-        useWords: useWordsOf(record),
+        useWords: wordsOfScope(record),
         fee: fee?.net ?? "",
         currency: fee?.currency ?? "",
         isBroughtIn: row.origin === "brought in",
