@@ -1,4 +1,4 @@
-import { packContour, unpackContour } from "@/lib/audio";
+import { packContour, unpackContour } from "@/lib/audio/contour";
 
 export interface Span {
   fromS: number;

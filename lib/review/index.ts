@@ -1,7 +1,7 @@
 export { type DelivererCase, getCaseOfDelivery, hearOwnPassage } from "./for-deliverer";
 export { type CaseGroupView, type CaseView, getCase } from "./get-case";
+export { hearPassage } from "./hear-passage";
 export { declareConflict, handOver, openPapers, takeCase } from "./hold-case";
-export { hearPassage, readListeningSubject, recordListening } from "./listening";
 export { openCase } from "./open-case";
 export { answerQuestion, askComposer } from "./question";
 export { listCases, type QueueRow } from "./queue";

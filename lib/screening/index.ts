@@ -1,4 +1,3 @@
-export { admitRecording } from "./admit-recording";
 export { announceReported } from "./announce-reported";
 export { coveredS, type DeliveryFacts, type ExplainedHit, explainHits, outcomeOf } from "./explain";
 export { readHead, readIndexChanges, storeFingerprints } from "./fingerprints";
@@ -21,7 +20,6 @@ export { listRegisters, type Registers } from "./list-registers";
 export { registerEntry } from "./register-entry";
 export { registerLoop } from "./register-loop";
 export { requestScreening, type ScreeningRequest } from "./request-screening";
-export { readScreeningSubject } from "./screen-recording";
 export { type CutPiece, getScreeningOfCue, type ScreeningOfCue } from "./screening-of-cue";
 export {
   EXPLANATIONS,

@@ -12,7 +12,11 @@ const rooms = readdirSync(`${root}lib`, { withFileTypes: true })
   .filter((entry) => entry.isDirectory() && !["kernel", "web", "commands"].includes(entry.name))
   .map((entry) => entry.name)
   .filter((room) => readdirSync(`${root}lib/${room}`).includes("index.ts"));
-for (const room of rooms) await import(`${root}lib/${room}/index.ts`);
+for (const room of rooms) {
+  await import(`${root}lib/${room}/index.ts`);
+  // Verbs that only the worker calls are reached through the room's jobs.
+  if (readdirSync(`${root}lib/${room}`).includes("jobs.ts")) await import(`${root}lib/${room}/jobs.ts`);
+}
 
 const rows: Rows = {};
 for (const file of readdirSync(`${root}tests/authorisation/rows`)) {

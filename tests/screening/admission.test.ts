@@ -7,7 +7,8 @@ import { renderVersion } from "@/fixtures/audio";
 import { createMonoResampler } from "@/lib/audio";
 import { ENGINE_VERSION, fingerprint, packFingerprint } from "@/lib/fingerprint";
 import { system } from "@/lib/kernel/actor";
-import { admitRecording, changeReference, storeFingerprints } from "@/lib/screening";
+import { changeReference, storeFingerprints } from "@/lib/screening";
+import { admitRecording } from "@/lib/screening/admit-recording";
 import { closeScreeningEngine } from "@/lib/screening/engine/engine";
 import { makeFamily, makeLibrary, makePerson, makeRecording } from "@/tests/support/make";
 
@@ -41,18 +42,16 @@ async function pendingRecording(packed: Uint8Array): Promise<string> {
   const familyId = await makeFamily({ libraryId, state: "pending" });
   const recordingId = await makeRecording({ familyId, libraryId, state: "pending", durationS: SPAN_S });
   const { id: delivererId } = await makePerson();
-  await db()
-    .insert(screeningRequests)
-    .values({
-      recordingId,
-      familyId,
-      libraryId,
-      delivererId,
-      writerIds: [],
-      declaredLoops: [],
-      expectsFamilyMatch: false,
-      requestedAt: new Date(),
-    });
+  await db().insert(screeningRequests).values({
+    recordingId,
+    familyId,
+    libraryId,
+    delivererId,
+    writerIds: [],
+    declaredLoops: [],
+    expectsFamilyMatch: false,
+    requestedAt: new Date(),
+  });
   await storeFingerprints(actor, {
     subjectKind: "recording",
     subjectId: recordingId,
