@@ -25,6 +25,8 @@ export function statementHolder(actor: StatementActor): Holder {
 }
 
 export interface StatementLine {
+  /** Of the entry and the order line: one line of a statement. */
+  key: string;
   entryId: string;
   code: EntryCode;
   /** What kind of line, as it is called in front of people. */
@@ -144,6 +146,7 @@ export async function statementLines(
     const { payoutId } = line.facts;
     return [
       {
+        key: `${line.entryId} ${line.orderLineId ?? "-"}`,
         entryId: line.entryId,
         code: line.code,
         name: ENTRY_WORDS[line.code],

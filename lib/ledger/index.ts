@@ -46,4 +46,5 @@ export { postRefund, type RefundOfLines } from "./refund";
 export { listDueHolds, releaseHolds } from "./release-holds";
 export { beginPayout, type PayoutToSend, recordPayoutFailed, recordPayoutSent } from "./send-payout";
 export { listUnsettled, type SettledMovement, settlePayments } from "./settle";
+export { csvCell, statementCsv } from "./statement-csv";
 export { type Breach, checkLedger, verifyLedger } from "./verify-ledger";
