@@ -39,6 +39,7 @@ export {
 export { readRecordingToRender, recordMaster, recordPreview } from "./rendering/record-rendering";
 export { Brief, type BriefInput, FamilyDescription, Section, Share } from "./schemas";
 export { readBrief } from "./search/read-brief";
+export { opensAt } from "./search/weigh";
 export { type SearchAnswer, type SearchResult, searchCues } from "./search/search-cues";
 export { searchTextOf } from "./search-text";
 export {
