@@ -6,6 +6,7 @@ import { certificates } from "@/db/schema/screening";
 import { startPayments } from "@/fixtures/services/payments/payments";
 import type { StandIn } from "@/fixtures/services/server";
 import { type Actor, system } from "@/lib/kernel/actor";
+import { withBusinessClock } from "@/lib/kernel/clock";
 import { newId } from "@/lib/kernel/ids";
 import { recordPaymentEvent } from "@/lib/ledger";
 import { approveOrder, openCheckout, placeOrder, setRateCard } from "@/lib/licensing";
@@ -45,7 +46,7 @@ const NOW = () => new Date("2026-01-02T09:00:00Z");
 /** A library with the invented card, a buyer company with a production, and a seat of each kind. */
 export async function makeShop(): Promise<Shop> {
   const libraryId = await makeLibrary();
-  await setRateCard(system("tests"), { libraryId, card: INVENTED_CARD });
+  await withBusinessClock(NOW(), () => setRateCard(system("tests"), { libraryId, card: INVENTED_CARD }));
   const companyId = await makeCompany({ taxNumber: null });
   const seat = async (mayApprove: boolean): Promise<Actor> => {
     const { id, name } = await makePerson();
