@@ -4,12 +4,11 @@ import { noticeEvents, notices, reportedWorks } from "@/db/schema/reports";
 import { familyById } from "@/lib/catalogue";
 import { EVERYONE } from "@/lib/kernel/actor";
 import { addBusinessDays, civilDateIn, endOfDay } from "@/lib/kernel/calendar";
-import { isMod3736 } from "@/lib/kernel/check-characters";
 import { Forbidden, Invalid, NotFound } from "@/lib/kernel/errors";
 import { openField } from "@/lib/kernel/field-crypto";
 import { UK_HOLIDAYS } from "@/lib/kernel/holidays";
-import { query } from "@/lib/kernel/verb";
-import type { ClaimOfNotice } from "./schemas";
+import { command, query } from "@/lib/kernel/verb";
+import { type ClaimOfNotice, MISTYPED, receiptNumberOf } from "./schemas";
 import { TRIAGE_WORKING_DAYS } from "./states";
 
 /** Status by receipt number, without an account: what happened and when; no name, no address, no library's data. */
@@ -18,12 +17,8 @@ export const getNoticeStatus = query({
   who: EVERYONE,
   input: z.object({ receiptNumber: z.string().trim().max(40) }),
   authorise: async ({ reader, input }) => {
-    const code = input.receiptNumber.toUpperCase().replace(/[\s-]/g, "");
-    if (!/^RN\d{4}[A-Z0-9]{8}[A-Z0-9]$/.test(code) || !isMod3736(code))
-      throw new Invalid(
-        "The check character does not match: a character is mistyped. Nothing was looked up.",
-      );
-    const receiptNumber = `RN-${code.slice(2, 6)}-${code.slice(6, 14)}-${code.slice(14)}`;
+    const receiptNumber = receiptNumberOf(input.receiptNumber);
+    if (!receiptNumber) throw new Invalid(MISTYPED);
     const [row] = await reader.select().from(notices).where(eq(notices.receiptNumber, receiptNumber));
     if (!row) throw new NotFound("There is no report of this number.");
     return row;
@@ -49,6 +44,8 @@ export const getNoticeStatus = query({
     };
   },
 });
+
+export type NoticeStatus = Awaited<ReturnType<typeof getNoticeStatus>>;
 
 const marketplaceOnly = async ({ actor }: { actor: { libraryId: string | null } }) => {
   if (actor.libraryId !== null) throw new Forbidden("Reported works belong to the marketplace's moderators.");
@@ -111,6 +108,8 @@ export const listReports = query({
     };
   },
 });
+
+export type ReportList = Awaited<ReturnType<typeof listReports>>;
 
 /** REPORTS-2: the reporter's contact reaches the marketplace's moderators and nobody else. */
 export const getReport = query({
@@ -179,14 +178,14 @@ export const getReport = query({
 });
 export type ReportView = Awaited<ReturnType<typeof getReport>>;
 
-/** The confidential recording of a report, for the marketplace's moderators. */
-export const hearReported = query({
+/** The confidential recording of a report, for the marketplace's moderators; each hearing stands in the log. */
+export const hearReported = command({
   name: "reports.hearReported",
   who: ["moderator"],
   input: z.object({ noticeId: z.string() }),
-  authorise: async ({ reader, actor, input }) => {
+  authorise: async ({ tx, actor, input }) => {
     await marketplaceOnly({ actor });
-    const [row] = await reader
+    const [row] = await tx
       .select({ key: notices.confidentialKey })
       .from(notices)
       .where(eq(notices.id, input.noticeId));
@@ -194,4 +193,5 @@ export const hearReported = query({
     return row.key;
   },
   run: async ({ subject }) => ({ fileKey: subject }),
+  audit: ({ input }) => ({ subject: input.noticeId }),
 });

@@ -1,4 +1,5 @@
 import { z } from "zod";
+import { isMod3736 } from "@/lib/kernel/check-characters";
 import { checkIsrc, checkIswc } from "@/lib/kernel/identifiers";
 import { CAPACITIES, CONCERNS, GROUNDS, type Ground } from "./states";
 
@@ -18,6 +19,16 @@ const TIME = "A time such as 0:20, minutes and seconds.";
 const seconds = z.number({ error: TIME }).min(0, TIME).max(86_400, TIME).nullable().default(null);
 export const LEVELS = ["claimed", "supported", "adjudicated"] as const;
 const grounds = Object.keys(GROUNDS) as [Ground, ...Ground[]];
+
+const RECEIPT = /^RN(\d{4})([A-Z0-9]{8})([A-Z0-9])$/;
+export const MISTYPED = "The check character does not match: a character is mistyped. Nothing was looked up.";
+
+/** A receipt number in its written form, however it was typed; null where its check character does not match. */
+export function receiptNumberOf(typed: string): string | null {
+  const code = typed.toUpperCase().replace(/[\s-]/g, "");
+  const [, year, chance, check] = RECEIPT.exec(code) ?? [];
+  return year && isMod3736(code) ? `RN-${year}-${chance}-${check}` : null;
+}
 
 /** What a report holds: who, what work, where, why, good faith, accuracy and authority. */
 export const SubmitNotice = z.object({
@@ -59,23 +70,27 @@ export const SetEvidenceLevel = z.object({
 });
 export type SetEvidenceLevel = z.output<typeof SetEvidenceLevel>;
 
-export const JudgeNotice = z.discriminatedUnion("decision", [
-  z.object({
-    noticeId: z.string(),
-    decision: z.literal("ask for more"),
-    reasons: text(20, 3000, "What is missing, in a sentence or two."),
-  }),
-  z.object({
-    noticeId: z.string(),
-    decision: z.literal("reject"),
-    reasons: text(60, 3000, "At least two sentences that the reporter understands."),
-  }),
-  z.object({
-    noticeId: z.string(),
-    decision: z.literal("accept"),
-    reasons: text(60, 3000, "At least two sentences that both sides understand."),
-    level: z.enum(LEVELS, { error: "How sure is it?" }),
-    holdTarget: z.boolean(),
-  }),
-]);
+export const JudgeNotice = z.discriminatedUnion(
+  "decision",
+  [
+    z.object({
+      noticeId: z.string(),
+      decision: z.literal("ask for more"),
+      reasons: text(20, 3000, "What is missing, in a sentence or two."),
+    }),
+    z.object({
+      noticeId: z.string(),
+      decision: z.literal("reject"),
+      reasons: text(60, 3000, "At least two sentences that the reporter understands."),
+    }),
+    z.object({
+      noticeId: z.string(),
+      decision: z.literal("accept"),
+      reasons: text(60, 3000, "At least two sentences that both sides understand."),
+      level: z.enum(LEVELS, { error: "How sure is it?" }),
+      holdTarget: z.boolean(),
+    }),
+  ],
+  { error: "Choose what you decide." },
+);
 export type JudgeNotice = z.output<typeof JudgeNotice>;
