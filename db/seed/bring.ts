@@ -1,6 +1,3 @@
-import { and, eq } from "drizzle-orm";
-import { db } from "@/db/client";
-import { families } from "@/db/schema/catalogue";
 import { loopFacts } from "@/fixtures/audio";
 import {
   acceptEditorial,
@@ -16,11 +13,13 @@ import { withBusinessClock } from "@/lib/kernel/clock";
 import { assert } from "@/lib/kernel/errors";
 import { addReportedWork } from "@/lib/reports";
 import { registerLoop } from "@/lib/screening";
+import { broughtInLicences } from "./brought-in";
 import { sharedMaterial } from "./data/registers";
-import { cueByNumber, type Handover, handoverOf } from "./drafts";
+import { type Handover, handoverOf } from "./drafts";
+import { firstSale } from "./first-sale";
 import { storeMaster } from "./masters";
 import { planner, planStep, priorityOf } from "./plan";
-import { broughtInLicences, firstSale } from "./sales";
+import { familyOfCue, later } from "./turns";
 import { composerActor, type DemoWorld, demoWorld, libraryOf, ownerActor, personOf, seeding } from "./world";
 
 const once = (key: string) => ({ operationId: `demo:${key}`.slice(0, 120) });
@@ -109,15 +108,6 @@ async function holdHarbourLights(world: DemoWorld): Promise<void> {
   );
 }
 
-export async function familyOfCue(world: DemoWorld, number: number): Promise<string | null> {
-  const cue = cueByNumber(number);
-  const [row] = await db()
-    .select({ id: families.id, state: families.state })
-    .from(families)
-    .where(and(eq(families.libraryId, libraryOf(world, cue.library)), eq(families.title, cue.title)));
-  return row?.state === "listed" ? row.id : null;
-}
-
 async function handOver(world: DemoWorld, item: string): Promise<void> {
   const handover = handoverOf(world, item);
   if (handover.files.length === 0) return;
@@ -157,13 +147,6 @@ async function handOver(world: DemoWorld, item: string): Promise<void> {
       once(`${item}:turn:1`),
     );
   });
-}
-
-const LATER_S = 8;
-
-/** What it rests on is not there yet: it comes round again. */
-export async function later(item: string): Promise<void> {
-  await planStep(planner, { item, priority: priorityOf(item), inS: LATER_S, turn: Date.now() });
 }
 
 const TURN_S = 2;

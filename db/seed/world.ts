@@ -8,11 +8,14 @@ import {
 } from "@/lib/accounts";
 import { createLibrary } from "@/lib/catalogue";
 import { type ActorOf, system } from "@/lib/kernel/actor";
+import { withBusinessClock } from "@/lib/kernel/clock";
 import { assert } from "@/lib/kernel/errors";
 import { recordAdvance } from "@/lib/ledger";
+import { setRateCard } from "@/lib/licensing";
 import { libraries } from "./data/libraries";
 import { composers, type PersonRow, people, type RoleRow } from "./data/people";
 import { companies } from "./data/productions";
+import { demoRateCard } from "./rate-cards";
 
 /*
  * Who and what is there before the first delivery. Every call carries an operation id of its own, so that asking again
@@ -64,6 +67,9 @@ async function build(): Promise<DemoWorld> {
       once(`library:${row.code}`),
     );
     libraryIds.set(row.code, libraryId);
+    await withBusinessClock(new Date("2026-01-01T00:00:00Z"), () =>
+      setRateCard(seeding, { libraryId, card: demoRateCard(row.currency) }, once(`card:${row.code}`)),
+    );
   }
   const companyIds = new Map<string, string>();
   for (const row of companies) {
