@@ -7,13 +7,20 @@ import type {
   FoundVersion,
 } from "@/components/search/find-types";
 import { type Ending, fmt } from "@/components/ui/format";
-import { type CueVersion, getCue, opensAt, type SearchResult, searchCues } from "@/lib/catalogue";
+import {
+  type CuePage,
+  type CueVersion,
+  getCue,
+  opensAt,
+  type SearchResult,
+  searchCues,
+} from "@/lib/catalogue";
 import type { Brief } from "@/lib/catalogue/schemas";
 import type { Actor } from "@/lib/kernel/actor";
 import { listFromPrices, priceUse } from "@/lib/licensing";
 import { Use } from "@/lib/licensing/rate-card";
 import { getProduction } from "@/lib/productions";
-import { getScreeningOfCue } from "@/lib/screening";
+import { getScreeningOfCue, type ScreeningOfCue } from "@/lib/screening";
 
 const PAGE_SIZE = 12;
 const ENDINGS: Record<string, Ending | null> = {
@@ -96,12 +103,15 @@ async function productionUse(actor: Actor, productionId: string): Promise<Use | 
   return use.success ? use.data : null;
 }
 
-const letterOf = (index: number) => String.fromCharCode(65 + (index % 26));
+export const letterOf = (index: number) => String.fromCharCode(65 + (index % 26));
 
 /** What the open strip shows: sections with their soundings, versions in full, cutdowns where their pieces come from. */
 export async function foundDetail(actor: Actor, number: string): Promise<FoundDetail> {
   const cue = await getCue(actor, { number });
-  const { pieces } = await getScreeningOfCue(actor, { familyId: cue.familyId });
+  return detailOf(cue, await getScreeningOfCue(actor, { familyId: cue.familyId }));
+}
+
+export function detailOf(cue: CuePage, { pieces }: ScreeningOfCue): FoundDetail {
   const sections = cue.sections.map((section, index) => ({
     letter: letterOf(index),
     fromS: section.atS,
