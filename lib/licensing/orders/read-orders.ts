@@ -28,7 +28,7 @@ import {
 import { refundsOf } from "./refund-lines";
 import { type InvoiceRow, papersOf } from "./write-invoice";
 
-type Viewer = ActorOf<"buyer" | "owner" | "accountant">;
+type Viewer = ActorOf<"buyer" | "owner" | "accountant" | "auditor">;
 
 export interface OrderLinePage {
   id: string;
@@ -75,7 +75,8 @@ export interface OrderPage {
 
 function maySee(actor: Viewer, order: OrderRow): boolean {
   if (actor.kind === "buyer") return actor.companyId === order.companyId;
-  return actor.libraryId === order.libraryId || (actor.kind === "accountant" && actor.libraryId === null);
+  const isAll = (actor.kind === "accountant" || actor.kind === "auditor") && actor.libraryId === null;
+  return isAll || actor.libraryId === order.libraryId;
 }
 
 async function seenOrder(reader: Reader, actor: Viewer, orderId: string): Promise<OrderRow> {
@@ -143,7 +144,7 @@ function versionsOf(
 /** One order as its company, its library or the marketplace's accountant sees it. */
 export const getOrder = query({
   name: "licensing.getOrder",
-  who: ["buyer", "owner", "accountant"],
+  who: ["buyer", "owner", "accountant", "auditor"],
   input: z.object({ orderId: z.string().max(40) }),
   authorise: ({ reader, actor, input }) => seenOrder(reader, actor, input.orderId),
   run: async ({ reader, actor, subject: order }): Promise<OrderPage> => {
@@ -166,7 +167,7 @@ export const getOrder = query({
       words: order.stateWords,
       isBuyers: actor.kind === "buyer",
       mayApprove: actor.kind === "buyer" && actor.mayApprove,
-      mayRefund: actor.kind !== "buyer" && (actor.kind === "owner" || actor.libraryId === null),
+      mayRefund: actor.kind === "owner" || (actor.kind === "accountant" && actor.libraryId === null),
       libraryName: library.name,
       licensee: { name, endClient },
       production: { id: production.id, title: production.title, episode: production.episode },
@@ -205,7 +206,7 @@ export const getOrder = query({
 /** Invoice and credit notes of one order, in full. */
 export const getInvoices = query({
   name: "licensing.getInvoices",
-  who: ["buyer", "owner", "accountant"],
+  who: ["buyer", "owner", "accountant", "auditor"],
   input: z.object({ orderId: z.string().max(40) }),
   authorise: ({ reader, actor, input }) => seenOrder(reader, actor, input.orderId),
   run: ({ reader, subject }): Promise<InvoiceRow[]> => papersOf(reader, subject.id),

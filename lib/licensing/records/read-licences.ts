@@ -17,7 +17,7 @@ import { licenceFile, type RecordRow, recordByNumber, withheldOf } from "./licen
 import { type Download, downloadsOf } from "./masters";
 import { statusHistory } from "./record-log";
 
-type Viewer = ActorOf<"buyer" | "owner" | "staff" | "accountant">;
+type Viewer = ActorOf<"buyer" | "owner" | "staff" | "accountant" | "auditor">;
 
 export interface LicenceEntry {
   number: string;
@@ -112,7 +112,8 @@ export interface LicencePage {
 
 function maySee(actor: Viewer, row: RecordRow): boolean {
   if (actor.kind === "buyer") return actor.companyId === row.companyId;
-  return actor.libraryId === row.libraryId || (actor.kind === "accountant" && actor.libraryId === null);
+  const isAll = (actor.kind === "accountant" || actor.kind === "auditor") && actor.libraryId === null;
+  return isAll || actor.libraryId === row.libraryId;
 }
 
 /** LICENSING-3: a record with its confidential fields is for the licensee's company and the library that licensed. */
@@ -136,7 +137,7 @@ const NUMBER = z.object({ number: z.string().max(40) });
 
 export const getLicence = query({
   name: "licensing.getLicence",
-  who: ["buyer", "owner", "staff", "accountant"],
+  who: ["buyer", "owner", "staff", "accountant", "auditor"],
   input: NUMBER,
   authorise: ({ reader, actor, input }) => seenRecord(reader, actor, input.number),
   run: async ({ reader, actor, subject: row, now }): Promise<LicencePage> => {
@@ -190,7 +191,7 @@ function answerOn(
 /** The signed file for the licensee's own keeping, nothing withheld. */
 export const getLicenceFile = query({
   name: "licensing.getLicenceFile",
-  who: ["buyer", "owner", "staff", "accountant"],
+  who: ["buyer", "owner", "staff", "accountant", "auditor"],
   input: NUMBER,
   authorise: ({ reader, actor, input }) => seenRecord(reader, actor, input.number),
   run: ({ reader, subject, now }): Promise<LicenceFile> => licenceFile(reader, subject, "licensee", now),

@@ -13,7 +13,7 @@ import { COLUMNS, type Column, type Rows, type World } from "../columns";
 const EVERYBODY = [...COLUMNS];
 const SYSTEM: readonly Column[] = ["system"];
 const BUYER: readonly Column[] = ["buyer"];
-const PARTIES: readonly Column[] = ["buyer", "owner", "accountant", "marketplaceAccountant"];
+const PARTIES: readonly Column[] = ["buyer", "owner", "accountant", "marketplaceAccountant", "auditor"];
 const READERS: readonly Column[] = [...PARTIES, "staff"];
 
 const carded = new Set<string>();
