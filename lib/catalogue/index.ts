@@ -9,6 +9,7 @@ export {
   setRecordingState,
 } from "./change-state";
 export { contoursOf } from "./contours";
+export { countListed } from "./count-listed";
 export { createLibrary } from "./create-library";
 export { type Availability, type CueCard, type CueVersion, cueCards } from "./cue-card";
 export {
@@ -39,8 +40,8 @@ export {
 export { readRecordingToRender, recordMaster, recordPreview } from "./rendering/record-rendering";
 export { Brief, type BriefInput, FamilyDescription, Section, Share } from "./schemas";
 export { readBrief } from "./search/read-brief";
-export { opensAt } from "./search/weigh";
 export { type SearchAnswer, type SearchResult, searchCues } from "./search/search-cues";
+export { opensAt } from "./search/weigh";
 export { searchTextOf } from "./search-text";
 export {
   DEALS,
