@@ -107,7 +107,7 @@ export function DraftVersion(props: DraftVersionProps) {
                 {`Replace the ${name.toLowerCase()}`}
               </FileButton>
               <Button
-                aria-label={`Take out ${version.fileName}`}
+                aria-label={`Take it out: ${version.fileName}`}
                 busy={removal.isRunning && "Taking it out"}
                 kind="quiet"
                 onClick={() => removal.run({ deliveryId, versionId: version.id }, onChanged)}

@@ -123,7 +123,7 @@ function SampleRow(props: SamplesFieldProps & { index: number; onRemove: () => v
           paper={paperKey ? { key: paperKey, name: paperName } : null}
           words="Add its licence or receipt"
         />
-        <Button aria-label={`Take out sample ${index + 1}`} kind="quiet" onClick={onRemove}>
+        <Button aria-label={`Take this sample out: ${index + 1}`} kind="quiet" onClick={onRemove}>
           Take this sample out
         </Button>
       </div>

@@ -71,7 +71,7 @@ export function SignPanel(props: SignPanelProps) {
                 as="li"
                 className="border-b border-buff-2 py-2"
                 end={
-                  <Button aria-label={`Go to ${step.words}`} kind="quiet" onClick={() => goTo(step.id)}>
+                  <Button aria-label={`Go there: ${step.words}`} kind="quiet" onClick={() => goTo(step.id)}>
                     Go there
                   </Button>
                 }

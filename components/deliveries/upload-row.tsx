@@ -36,10 +36,18 @@ export function UploadRow({ upload, uploads }: { upload: RunningUpload; uploads:
           <span className="wrap-anywhere">{file.name}</span> did not arrive.
         </Problem>
         <p className="mt-1.5 ml-[1.4375rem] flex gap-x-5">
-          <Button aria-label={`Try ${file.name} again`} kind="quiet" onClick={() => uploads.again(upload.id)}>
+          <Button
+            aria-label={`Try again: ${file.name}`}
+            kind="quiet"
+            onClick={() => uploads.again(upload.id)}
+          >
             Try again
           </Button>
-          <Button aria-label={`Leave ${file.name} out`} kind="quiet" onClick={() => uploads.drop(upload.id)}>
+          <Button
+            aria-label={`Leave it out: ${file.name}`}
+            kind="quiet"
+            onClick={() => uploads.drop(upload.id)}
+          >
             Leave it out
           </Button>
         </p>
@@ -60,19 +68,19 @@ export function UploadRow({ upload, uploads }: { upload: RunningUpload; uploads:
       {progress && progress.sentBytes < progress.totalBytes && (
         <p className="mt-1 flex gap-x-5">
           {state === "paused" ? (
-            <Button
-              aria-label={`Go on with ${file.name}`}
-              kind="quiet"
-              onClick={() => uploads.resume(upload.id)}
-            >
+            <Button aria-label={`Go on: ${file.name}`} kind="quiet" onClick={() => uploads.resume(upload.id)}>
               Go on
             </Button>
           ) : (
-            <Button aria-label={`Pause ${file.name}`} kind="quiet" onClick={() => uploads.pause(upload.id)}>
+            <Button aria-label={`Pause: ${file.name}`} kind="quiet" onClick={() => uploads.pause(upload.id)}>
               Pause
             </Button>
           )}
-          <Button aria-label={`Leave ${file.name} out`} kind="quiet" onClick={() => uploads.drop(upload.id)}>
+          <Button
+            aria-label={`Leave it out: ${file.name}`}
+            kind="quiet"
+            onClick={() => uploads.drop(upload.id)}
+          >
             Leave it out
           </Button>
         </p>

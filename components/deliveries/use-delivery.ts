@@ -12,13 +12,14 @@ const keyOf = (deliveryId: string) => ["delivery", deliveryId];
 
 /** The delivery as it is now: asked for often while something is being measured or screened. */
 export function useDelivery(first: DeliveryPage) {
-  const contours = useRef(new Map<string, string>());
+  const contours = useRef<Map<string, string> | null>(null);
   const id = first.delivery.id;
   return useQuery({
     queryKey: keyOf(id),
     initialData: first,
     staleTime: 0,
     queryFn: async ({ signal }): Promise<DeliveryPage> => {
+      contours.current ??= contoursOf(first);
       const have = [...contours.current.keys()].join(",");
       const answer = await fetch(`/api/deliveries/${id}?have=${have}`, { signal });
       if (!answer.ok) throw new Error(`the delivery could not be read: ${answer.status}`);
@@ -27,6 +28,14 @@ export function useDelivery(first: DeliveryPage) {
     refetchInterval: ({ state }) =>
       state.data?.delivery.versions.some((version) => BUSY.has(version.state)) ? BUSY_MS : QUIET_MS,
   });
+}
+
+function contoursOf(page: DeliveryPage): Map<string, string> {
+  return new Map(
+    page.delivery.versions.flatMap((version) =>
+      version.contour ? [[version.id, version.contour] as const] : [],
+    ),
+  );
 }
 
 /** A contour never changes, so it travels once. */

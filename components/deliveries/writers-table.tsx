@@ -74,7 +74,7 @@ export function WritersTable({ delivery, zone, now, onDone, isMain }: WritersTab
                   <>
                     {". "}
                     <Button
-                      aria-label={`Ask ${writer.name} again`}
+                      aria-label={`Ask again: ${writer.name}`}
                       busy={again.isRunning && "Asking"}
                       kind="quiet"
                       onClick={() => again.run({ deliveryId: delivery.id, writerId: writer.id }, onDone)}

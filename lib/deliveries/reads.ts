@@ -203,7 +203,11 @@ export const getDelivery = query({
         codes: event.codes,
         versionId: event.versionId,
       })),
-      versions: await Promise.all(versions.map((version) => versionView(reader, delivery, version))),
+      versions: await Promise.all(
+        versions
+          .toSorted((a, b) => Number(b.versionRole === "full") - Number(a.versionRole === "full"))
+          .map((version) => versionView(reader, delivery, version)),
+      ),
     };
   },
 });

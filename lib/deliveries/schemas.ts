@@ -1,5 +1,15 @@
 import { z } from "zod";
 import { FamilyDescription } from "@/lib/catalogue/schemas";
+import {
+  densities,
+  endings,
+  genres,
+  instruments,
+  moods,
+  shapes,
+  uses,
+  voiceKinds,
+} from "@/lib/catalogue/vocabularies";
 import { checkIpiNameNumber, checkIsrc, checkIswc } from "@/lib/kernel/identifiers";
 
 const identifier = (
@@ -56,8 +66,23 @@ const sumIs100 = (message: string) => (rows: readonly { share: number }[], conte
   context.addIssue({ code: "custom", message: `${message} add to ${text(sum)}, ${difference} (M01).` });
 };
 
+/** One of a controlled list, by its stable id. */
+const termOf = (terms: readonly { id: string }[], message: string) =>
+  z.string().refine((id) => terms.some((term) => term.id === id), message);
+const termsOf = (terms: readonly { id: string }[], least: number, most: number, message: string) =>
+  z.array(termOf(terms, message)).min(least, message).max(most);
+
 /** The whole form, as it must be when it is signed. */
 export const DeliveryForm = FamilyDescription.extend({
+  genre: termOf(genres, "Choose the genre that fits best."),
+  moreGenres: termsOf(genres, 0, 2, "At most two more genres."),
+  moods: termsOf(moods, 1, 4, "Choose one to four moods."),
+  instruments: termsOf(instruments, 1, 8, "Choose one to eight leading instruments."),
+  uses: termsOf(uses, 0, 5, "Choose at most five uses."),
+  voice: termOf(voiceKinds, "Say what voice there is, or none."),
+  ending: termOf(endings, "Say how it ends."),
+  shape: termOf(shapes, "Say how it goes."),
+  density: termOf(densities, "Say how full it is."),
   iswc: IswcField,
   writers: z
     .array(DeliveryWriter)

@@ -1,4 +1,5 @@
 import { type ContainerFacts, ENDINGS, type Ending, type Measures, technicalChecks } from "@/lib/audio";
+import { genres } from "@/lib/catalogue/vocabularies";
 import { system } from "@/lib/kernel/actor";
 import { ThreadError, ThreadHost } from "@/lib/kernel/thread";
 import { withLocalCopy } from "@/lib/uploads";
@@ -27,7 +28,7 @@ export async function measureVersion(
     technicalChecks(facts as ContainerFacts, measures as Measures, {
       versionRole: version.versionRole,
       endingDeclared: isEnding(version.ending) ? version.ending : null,
-      ...(version.genre ? { genre: version.genre } : {}),
+      ...(version.genre ? { genre: genreLabel(version.genre) } : {}),
     }).map((check) => ({ ...check }));
   if (version.facts && version.measures && version.sha256) {
     await recordMeasurement(actor, {
@@ -68,6 +69,9 @@ export async function measureVersion(
     throw error;
   }
 }
+
+/** The checks know genres by their names, the form keeps their ids. */
+const genreLabel = (id: string) => genres.find((genre) => genre.id === id)?.label ?? id;
 
 const isEnding = (value: string | null): value is Ending =>
   value !== null && (ENDINGS as readonly string[]).includes(value);
