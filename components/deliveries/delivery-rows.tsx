@@ -15,7 +15,7 @@ interface DeliveryRowsProps {
 /** Deliveries as sentences, each with its shape. */
 export function DeliveryRows({ deliveries, zone, withDeliverer }: DeliveryRowsProps) {
   return (
-    <ul className="border-t border-ink">
+    <ul>
       {deliveries.map((delivery) => (
         <StatusSentence
           as="li"

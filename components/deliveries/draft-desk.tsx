@@ -2,7 +2,7 @@
 
 import { zodResolver } from "@hookform/resolvers/zod";
 import { parseAsStringLiteral, useQueryState } from "nuqs";
-import { type ReactNode, useEffect, useRef } from "react";
+import { type ReactNode, useEffect, useRef, useState } from "react";
 import { FormProvider, useForm, useWatch } from "react-hook-form";
 import { Button } from "@/components/ui/button";
 import { cx } from "@/components/ui/cx";
@@ -17,6 +17,7 @@ import { DraftForm, type DraftInput, type DraftOutput, fromDraft, STEPS, type St
 import { FilesStep } from "./files-step";
 import { MusicStep } from "./music-step";
 import { SignPanel } from "./sign-panel";
+import { TriedContext } from "./tried";
 import { useReadAgain } from "./use-delivery";
 import { type Keeping, useDraftKeeping } from "./use-draft-keeping";
 import { type Missing, useMissing } from "./use-missing";
@@ -75,6 +76,7 @@ export function DraftDesk({ delivery }: { delivery: DeliveryOnWire }) {
   const ending = useWatch({ control: form.control, name: "ending" }) || null;
   const heading = useRef<HTMLHeadingElement>(null);
   const moved = useRef(false);
+  const [tried, setTried] = useState<readonly StepId[]>([]);
   const index = MAIN_STEPS.findIndex((entry) => entry.id === step);
   const next = MAIN_STEPS[index + 1];
   // biome-ignore lint/correctness/useExhaustiveDependencies: the heading is announced whenever the step changes
@@ -89,6 +91,7 @@ export function DraftDesk({ delivery }: { delivery: DeliveryOnWire }) {
     else void setStep(target as (typeof MAIN_STEPS)[number]["id"]);
   };
   const goOn = async () => {
+    setTried((steps) => [...steps, step]);
     const isWhole = await form.trigger(FIELDS[step] as never, { shouldFocus: true });
     const blocked = step === "writers" && missing.some((item) => item.step === "writers");
     if (isWhole && !blocked) goTo(next?.id ?? "sign");
@@ -146,7 +149,7 @@ export function DraftDesk({ delivery }: { delivery: DeliveryOnWire }) {
             <span className="sr-only">{`Step ${index + 1} of ${STEPS.length}: `}</span>
             {MAIN_STEPS[index]?.words}
           </h2>
-          {bodies[step]}
+          <TriedContext value={tried.includes(step)}>{bodies[step]}</TriedContext>
           <div className="mt-8 flex flex-wrap items-center gap-x-5 gap-y-3 border-t border-ink pt-4">
             <Button kind={isReady || filesIsMain ? "plain" : "main"} type="submit">
               {next ? `Go on to ${lowerFirst(next.words)}` : "Go on to the signature"}

@@ -5,6 +5,7 @@ import { Button } from "@/components/ui/button";
 import { SelectField, TextField } from "@/components/ui/field";
 import type { DraftInput, DraftOutput } from "./draft-form";
 import { PaperField } from "./paper-field";
+import { useTried } from "./tried";
 import type { DeliveryOnWire } from "./wire";
 
 const KINDS = [
@@ -63,7 +64,10 @@ export function SamplesField({ deliveryId, papers, onPaper }: SamplesFieldProps)
 function SampleRow(props: SamplesFieldProps & { index: number; onRemove: () => void }) {
   const { deliveryId, papers, index, onRemove, onPaper } = props;
   const { register, control, formState, setValue } = useFormContext<DraftInput, unknown, DraftOutput>();
-  const errors = formState.errors.declaration?.samples?.[index];
+  const tried = useTried();
+  const touched = formState.touchedFields.declaration?.samples?.[index];
+  const found = formState.errors.declaration?.samples?.[index];
+  const errorAt = (name: "what" | "source" | "loopCode") => (tried || touched?.[name]) && found?.[name];
   const path = `declaration.samples.${index}` as const;
   const kind = useWatch({ control, name: `${path}.kind` });
   const paperKey = useWatch({ control, name: `${path}.paperKey` });
@@ -73,12 +77,12 @@ function SampleRow(props: SamplesFieldProps & { index: number; onRemove: () => v
     <fieldset className="grid min-w-0 gap-x-4 gap-y-3 @wide:grid-cols-2">
       <legend className="sr-only">Sample {index + 1}</legend>
       <TextField
-        error={errors?.what && "What it is, in a few words."}
+        error={errorAt("what") ? "What it is, in a few words." : undefined}
         label="What it is"
         {...register(`${path}.what`)}
       />
       <TextField
-        error={errors?.source && "Where it comes from."}
+        error={errorAt("source") ? "Where it comes from." : undefined}
         label="Where it comes from"
         {...register(`${path}.source`)}
       />
@@ -93,7 +97,9 @@ function SampleRow(props: SamplesFieldProps & { index: number; onRemove: () => v
       />
       {isLoop && (
         <TextField
-          error={errors?.loopCode && "The register's code is LP- and three digits, such as LP-003."}
+          error={
+            errorAt("loopCode") ? "The register's code is LP- and three digits, such as LP-003." : undefined
+          }
           hint="A registered loop explains its own matches, where its condition holds and a paper is shown."
           label="Code in the register"
           {...register(`${path}.loopCode`, {

@@ -90,7 +90,7 @@ export function SignPanel(props: SignPanelProps) {
       ) : (
         <StatusSentence mark="done">Everything that is needed is here.</StatusSentence>
       )}
-      <div className="mt-5 space-y-4">
+      <div className="mt-5 space-y-4" hidden={open.length > 0}>
         <CheckField error={errors?.truth?.message} {...register("declaration.truth")}>
           All of this is true. I know that a false declaration can lead to refusal, reversed payments and
           removal.

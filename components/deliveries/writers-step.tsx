@@ -8,6 +8,7 @@ import { StatusSentence } from "@/components/ui/status-sentence";
 import { WRITER_ROLES } from "@/lib/catalogue/states";
 import { checkIpiNameNumber } from "@/lib/kernel/identifiers";
 import { type DraftInput, type DraftOutput, sumOf } from "./draft-form";
+import { useTried } from "./tried";
 
 type Side = "writers" | "publishers";
 
@@ -101,9 +102,12 @@ interface ShareRowProps {
 function ShareRow({ side, one, index, onRemove }: ShareRowProps) {
   const form = useFormContext<DraftInput, unknown, DraftOutput>();
   const { register, formState, control, setValue } = form;
-  const errors = formState.errors[side]?.[index] as
-    | Record<"name" | "email" | "ipi" | "share", { message?: string } | undefined>
-    | undefined;
+  const tried = useTried();
+  type Fields<Value> = Partial<Record<"name" | "email" | "ipi" | "share", Value>> | undefined;
+  const touched = formState.touchedFields[side]?.[index] as Fields<boolean>;
+  const found = formState.errors[side]?.[index] as Fields<{ message?: string }>;
+  const errorAt = (name: "name" | "email" | "ipi" | "share") =>
+    tried || touched?.[name] ? found?.[name] : undefined;
   const ipi = useWatch({ control, name: `${side}.${index}.ipi` }) ?? "";
   const checked = ipi.replace(/\D/g, "").length >= 11 ? checkIpiNameNumber(ipi) : null;
   const wrong = checked && !checked.ok ? checked : null;
@@ -116,14 +120,14 @@ function ShareRow({ side, one, index, onRemove }: ShareRowProps) {
       </legend>
       <TextField
         className="col-span-2 @wide:col-span-3"
-        error={errors?.name && "The name as it stands in the contract."}
+        error={errorAt("name") && "The name as it stands in the contract."}
         label="Name"
         {...register(`${side}.${index}.name`)}
       />
       {side === "writers" && (
         <TextField
           className="col-span-2 @wide:col-span-3"
-          error={errors?.email?.message}
+          error={errorAt("email")?.message}
           inputMode="email"
           label="E-mail address"
           optional
@@ -134,7 +138,7 @@ function ShareRow({ side, one, index, onRemove }: ShareRowProps) {
       <div className="col-span-2">
         <TextField
           autoComplete="off"
-          error={wrong?.message ?? errors?.ipi?.message}
+          error={wrong?.message ?? errorAt("ipi")?.message}
           inputMode="numeric"
           label="IPI name number"
           optional
@@ -161,7 +165,7 @@ function ShareRow({ side, one, index, onRemove }: ShareRowProps) {
       />
       <TextField
         className="@wide:col-span-1"
-        error={errors?.share && "A share like 33.34."}
+        error={errorAt("share") && "A share like 33.34."}
         inputMode="decimal"
         label="Share, %"
         {...register(`${side}.${index}.share`)}

@@ -33,6 +33,7 @@ function headFor(rows: readonly DeliverySummary[], asked: number): string {
   if (rows.length === 0) return "Nothing is delivered yet.";
   if (needs > 0) return `${fmt.countWord(needs, "delivery needs", "deliveries need")} something from you.`;
   if (working > 0) return `${fmt.countWord(working, "delivery is", "deliveries are")} being worked on.`;
+  if (rows.length === 1) return "One delivery, and it does not wait for you.";
   return `${fmt.countWord(rows.length, "delivery", "deliveries")}; none of them waits for you.`;
 }
 
