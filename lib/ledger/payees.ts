@@ -2,7 +2,7 @@ import { and, eq } from "drizzle-orm";
 import { z } from "zod";
 import type { Reader, Tx } from "@/db/client";
 import { payees } from "@/db/schema/ledger";
-import { type PersonRef, peopleByIds, peopleWithRole } from "@/lib/accounts";
+import { type PersonRef, peopleByIds, peopleWithRole, requireRecentSecondFactor } from "@/lib/accounts";
 import { enqueue } from "@/lib/jobs";
 import type { ActorOf } from "@/lib/kernel/actor";
 import { env } from "@/lib/kernel/env";
@@ -52,7 +52,11 @@ export const startPayee = command({
   name: "ledger.startPayee",
   who: ["owner", "accountant", "composer"],
   input: StartPayee,
-  authorise: async ({ actor }) => holderOf(actor),
+  authorise: async ({ actor }) => {
+    const holder = holderOf(actor);
+    if (holder.kind === "library") requireRecentSecondFactor(actor);
+    return holder;
+  },
   run: async ({ tx, input, subject, now }) => {
     const there = await payeeOf(tx, subject.kind, subject.holderId);
     if (there?.processorAccount)

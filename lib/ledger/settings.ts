@@ -1,7 +1,6 @@
-import { inArray } from "drizzle-orm";
 import type { Reader } from "@/db/client";
-import { settings } from "@/db/schema/kernel";
 import { minorUnits } from "@/lib/kernel/currencies";
+import { readSettings } from "@/lib/kernel/settings";
 import { HOLD_DAYS, PAYOUT_THRESHOLD, PLATFORM_FEE_BPS } from "./states";
 
 const DEFAULTS = {
@@ -18,12 +17,9 @@ export interface LedgerSettings {
 
 /** What an administrator has set, else the defaults of states.ts. */
 export async function ledgerSettings(reader: Reader): Promise<LedgerSettings> {
-  const rows = await reader
-    .select({ name: settings.name, value: settings.value })
-    .from(settings)
-    .where(inArray(settings.name, Object.keys(DEFAULTS)));
+  const set = await readSettings(reader, Object.keys(DEFAULTS));
   const read = (name: keyof typeof DEFAULTS): number => {
-    const value = rows.find((row) => row.name === name)?.value;
+    const value = set.get(name);
     return typeof value === "number" ? value : DEFAULTS[name];
   };
   const threshold = read("ledger.payoutThreshold");

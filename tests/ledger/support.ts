@@ -262,8 +262,8 @@ const at =
     withBusinessClock(new Date(instant), work);
 
 /** Prepares, releases, confirms and sends a run as its jobs do, but for the processor's own part. */
-export async function payOut(shop: Shop): Promise<string[]> {
-  const { runId } = await preparePayoutRun(shop.accountant, { libraryId: shop.libraryId, currency: "GBP" });
+export async function payOut(shop: Shop, currency = "GBP"): Promise<string[]> {
+  const { runId } = await preparePayoutRun(shop.accountant, { libraryId: shop.libraryId, currency });
   await releasePayoutRun(shop.accountant, { runId });
   await confirmPayoutRun(shop.marketplace, { runId });
   const rows = await db().select().from(payouts).where(eq(payouts.runId, runId));
@@ -274,28 +274,26 @@ export async function payOut(shop: Shop): Promise<string[]> {
 }
 
 /** The worked sale from capture to dispute, on its days; "march" stops after the payout. */
-export async function playWorkedSale(shop: Shop, until: "march" | "april") {
-  const sale = workedSale(shop);
+export async function playWorkedSale(shop: Shop, until: "march" | "april", currency = "GBP") {
+  const sale = workedSale(shop, { currency });
   const { libraryId } = shop;
   const paidAt = new Date("2025-11-03T00:00:00Z");
   await recordAdvance(shop.owner, {
     libraryId,
     personId: shop.C,
     amountMinor: 4500n,
-    currency: "GBP",
+    currency,
     paidAt,
   });
   await makePayee("library", libraryId);
   await makePayee("person", shop.A);
   await at("2026-03-14T10:00:00Z")(() => steps.capture(job, sale));
   const movement = (sourceId: string | null, amount: string) => ({
-    movements: [
-      { movementId: newId("txn"), sourceId: sourceId ?? "", netMinor: minor(amount), currency: "GBP" },
-    ],
+    movements: [{ movementId: newId("txn"), sourceId: sourceId ?? "", netMinor: minor(amount), currency }],
   });
   await at("2026-03-17T09:00:00Z")(() => settlePayments(job, movement(sale.chargeId, "431.23")));
   await at("2026-03-28T00:00:00Z")(() => releaseHolds(job, { orderId: sale.orderId }));
-  await at("2026-03-31T09:00:00Z")(() => payOut(shop));
+  await at("2026-03-31T09:00:00Z")(() => payOut(shop, currency));
   if (until === "march") return sale;
   const eventAt = new Date("2026-04-02T11:00:00Z");
   const words = "Bought twice by mistake: refunded.";

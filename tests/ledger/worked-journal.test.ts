@@ -191,7 +191,7 @@ describe.sequential("the worked sale, through the verbs", () => {
     await expectLedgerSound();
   });
 
-  test("J5 the payout: two persons release it, those under 25.00 are carried, and sending twice moves money once", async () => {
+  test("J5 the payout (LEDGER-11, LEDGER-12): two persons release it, those under 25.00 are carried, and sending twice moves money once", async () => {
     await onboard();
     await at("2026-03-31T09:00:00Z")(async () => {
       const { runId } = await preparePayoutRun(shop.accountant, {
@@ -244,7 +244,7 @@ describe.sequential("the worked sale, through the verbs", () => {
     await expectLedgerSound();
   });
 
-  test("J6 the refund of line 2 takes back the stored parts", async () => {
+  test("J6 the refund of line 2 takes back the stored parts (LEDGER-7, LEDGER-8)", async () => {
     const made = await refund({
       paymentId,
       orderId: sale.orderId,
@@ -335,7 +335,7 @@ describe.sequential("the worked sale, through the verbs", () => {
     await expectLedgerSound();
   });
 
-  test("a payout run in April debits nobody, and says why each is carried", async () => {
+  test("LEDGER-13 a payout run in April debits nobody, and says why each is carried", async () => {
     await at("2026-04-30T09:00:00Z")(async () => {
       const { runId, toPay } = await preparePayoutRun(shop.accountant, {
         libraryId: shop.libraryId,
