@@ -29,6 +29,8 @@ interface ChoiceMenuProps {
   hint?: string;
   onChange: (ids: string[]) => void;
   quiet?: boolean;
+  /** One of them always stands: it cannot be left open. */
+  required?: boolean;
 }
 
 const ITEM =
@@ -36,7 +38,7 @@ const ITEM =
 
 /** Underlined words that open the list of what may stand in their place. */
 export function ChoiceMenu(props: ChoiceMenuProps) {
-  const { name, words, isOpen, groups, chosen, several, hint, onChange, quiet } = props;
+  const { name, words, isOpen, groups, chosen, several, hint, onChange, quiet, required } = props;
   const [place, setPlace] = useState<HTMLSpanElement | null>(null);
   const count = groups.reduce((sum, group) => sum + group.options.length, 0);
   return (
@@ -62,7 +64,7 @@ export function ChoiceMenu(props: ChoiceMenuProps) {
             )}
           >
             {hint && <p className="px-3 pt-1 pb-1.5 text-small text-ink-soft">{hint}</p>}
-            {chosen.length > 0 && (
+            {chosen.length > 0 && !required && (
               <Menu.Item className={ITEM} onClick={() => onChange([])}>
                 <span />
                 <span className="link">Leave it open</span>
