@@ -2,7 +2,13 @@ import { eq } from "drizzle-orm";
 import { db } from "@/db/client";
 import { people } from "@/db/schema/accounts";
 import { libraries, recordings } from "@/db/schema/catalogue";
-import { type ComposerKey, type CueRow, keyLabel, type LibraryCode, versionIsrc } from "@/db/seed/data/cue-row";
+import {
+  type ComposerKey,
+  type CueRow,
+  keyLabel,
+  type LibraryCode,
+  versionIsrc,
+} from "@/db/seed/data/cue-row";
 import { cues } from "@/db/seed/data/cues";
 import { listClearRecordings, registerFamily } from "@/lib/catalogue";
 import { checkIswc } from "@/lib/kernel/identifiers";
@@ -23,10 +29,31 @@ export interface FillOptions {
   previewKeyOf?: (cue: CueRow, position: number) => string | null;
 }
 
-const LIBRARIES: Record<LibraryCode, { name: string; place: string; currency: string; publisherIpi: string; countryCode: string }> = {
-  SM: { name: "Saltmarrow Music Library", place: "Leith, UK", currency: "GBP", publisherIpi: "99900002152", countryCode: "GB" },
-  BC: { name: "Brindlecote Cues", place: "Hamilton (Ontario), CA", currency: "USD", publisherIpi: "99900002250", countryCode: "CA" },
-  OA: { name: "Ostravelle Audiothèque", place: "Namur, BE", currency: "EUR", publisherIpi: "99900002348", countryCode: "BE" },
+const LIBRARIES: Record<
+  LibraryCode,
+  { name: string; place: string; currency: string; publisherIpi: string; countryCode: string }
+> = {
+  SM: {
+    name: "Saltmarrow Music Library",
+    place: "Leith, UK",
+    currency: "GBP",
+    publisherIpi: "99900002152",
+    countryCode: "GB",
+  },
+  BC: {
+    name: "Brindlecote Cues",
+    place: "Hamilton (Ontario), CA",
+    currency: "USD",
+    publisherIpi: "99900002250",
+    countryCode: "CA",
+  },
+  OA: {
+    name: "Ostravelle Audiothèque",
+    place: "Namur, BE",
+    currency: "EUR",
+    publisherIpi: "99900002348",
+    countryCode: "BE",
+  },
 };
 const COMPOSERS: Record<ComposerKey, string> = {
   A: "Ailsa Trevarrick-Moe",
@@ -65,8 +92,17 @@ async function fillOne(
   const libraryId = libraryIds.get(cue.library)!;
   const library = LIBRARIES[cue.library];
   const now = new Date(Date.UTC(2026, 0, 2, 9, cue.number));
-  const versions = cue.versions.flatMap((version) => (version.role === "stems" ? ["stem:one", "stem:two"].map((role) => ({ ...version, role })) : [version]));
-  const lengthOf = (role: string) => (/^\d+$/.test(role) ? Number(role) : role === "sting" ? 6 : role === "loop" ? Math.min(32, cue.durationS) : cue.durationS);
+  const versions = cue.versions.flatMap((version) =>
+    version.role === "stems" ? ["stem:one", "stem:two"].map((role) => ({ ...version, role })) : [version],
+  );
+  const lengthOf = (role: string) =>
+    /^\d+$/.test(role)
+      ? Number(role)
+      : role === "sting"
+        ? 6
+        : role === "loop"
+          ? Math.min(32, cue.durationS)
+          : cue.durationS;
   return db().transaction(async (tx) => {
     const { familyId, recordingIds, catalogueNumber } = await registerFamily(tx, {
       libraryId,
@@ -111,7 +147,15 @@ async function fillOne(
           shareBps: writer.shareBps,
           acceptedAt: now,
         })),
-        { side: "publisher" as const, personId: null, name: library.name, ipi: library.publisherIpi, role: "E", shareBps: 10_000, acceptedAt: now },
+        {
+          side: "publisher" as const,
+          personId: null,
+          name: library.name,
+          ipi: library.publisherIpi,
+          role: "E",
+          shareBps: 10_000,
+          acceptedAt: now,
+        },
       ],
       recordings: versions.map((version, index) => ({
         versionRole: version.role,
@@ -136,7 +180,9 @@ async function fillOne(
     });
     await tx.update(recordings).set({ state: "clear" }).where(eq(recordings.familyId, familyId));
     for (const [index, id] of recordingIds.entries()) {
-      const previewKey = options.previewKeyOf ? options.previewKeyOf(cue, index) : `preview-${cue.number}-${index}`;
+      const previewKey = options.previewKeyOf
+        ? options.previewKeyOf(cue, index)
+        : `preview-${cue.number}-${index}`;
       await tx.update(recordings).set({ previewKey }).where(eq(recordings.id, id));
     }
     await listClearRecordings(tx, familyId, { words: "Listed.", now });

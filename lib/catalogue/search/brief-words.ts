@@ -194,7 +194,7 @@ export const stopWords = new Set(
   (
     "a about also an and any are as at bar be been bit but by can clip could cue cues feel feeling feels find for " +
     "from get give has have having i in into is it its just kind led like little made make maybe me mood moody " +
-    "more music my need needs of off on one only or our out over perhaps piece please quite rather really scene " +
+    "come more music my need needed needs of off on one only or our out over perhaps piece please quite rather really scene " +
     "should so some somebody someone something sound sounding sounds sort style than that the their them then " +
     "there these they this those through to too track tune under underneath until up us use used very version " +
     "versions want wants was we where which while who will with would you your bpm tempo play plays playing " +

@@ -43,9 +43,10 @@ export async function candidates(reader: Reader, brief: Brief): Promise<Candidat
   const relevance = words.length
     ? sql`match(f.search_text) against (${booleanQuery(words)} in boolean mode)`
     : sql`0`;
+  const code = brief.text.toUpperCase().replace(/[^A-Z0-9]/g, "");
   const exact = words.length
-    ? sql`(f.catalogue_number = ${brief.text.toUpperCase()} or f.title = ${brief.text} or exists (
-        select 1 from recordings i where i.family_id = f.id and i.isrc = ${brief.text.toUpperCase()}))`
+    ? sql`(f.title = ${brief.text} or f.catalogue_number = ${code} or exists (
+        select 1 from recordings i where i.family_id = f.id and i.isrc = ${code}))`
     : sql`0`;
   const asked = askedTerms(brief);
   const shared = asked.length
@@ -83,6 +84,8 @@ function exclusions(brief: Brief): SQL[] {
   return brief.not.map((excluded) => {
     const colon = excluded.indexOf(":");
     const [kind, term] = [excluded.slice(0, colon), excluded.slice(colon + 1)];
+    // Ids are ASCII, and comparing them with anything else is an error of the database.
+    if (kind !== "word" && !/^[a-z-]+$/.test(term)) return sql`1`;
     if (kind === "voice") return sql`f.voice <> ${term}`;
     if (kind === "word") {
       const words = textWords(term);

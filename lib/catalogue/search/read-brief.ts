@@ -105,7 +105,19 @@ class Found {
     for (const id of targets.voice ?? []) this.not.add(`voice:${id}`);
   }
 
+  /** Asked for and ruled out in one breath means a version without it: "a choir, and one without the choir". */
+  private settle(): void {
+    const asked = { mood: this.moods, use: this.uses, instrument: this.lead, genre: this.genres };
+    for (const [kind, terms] of Object.entries(asked)) {
+      for (const term of terms) {
+        if (this.not.delete(`${kind}:${term}`) && kind === "instrument")
+          this.versions.add(term === "choir" || term === "solo-voice" ? "instrumental" : "no-lead");
+      }
+    }
+  }
+
   brief(): Brief {
+    this.settle();
     const first = (values: Set<string>, most: number) => [...values].slice(0, most);
     return Brief.parse({
       moods: first(this.moods, 8),
