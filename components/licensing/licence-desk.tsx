@@ -13,7 +13,7 @@ import type { PriceAnswer } from "@/lib/licensing";
 import type { RateCard, Use } from "@/lib/licensing/rate-card";
 import { FactorTable } from "./factor-table";
 import { UseSentence } from "./use-sentence";
-import { wantedUse, type Wish, wishOf } from "./wish";
+import { type Wish, wantedUse, wishOf } from "./wish";
 
 type Proposed = { ok: true; data: { orderId: string } } | { ok: false; message: string };
 

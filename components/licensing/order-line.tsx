@@ -1,0 +1,75 @@
+import { TextLink } from "@/components/ui/button";
+import { Disclosure } from "@/components/ui/disclosure";
+import { fmt } from "@/components/ui/format";
+import { Section } from "@/components/ui/sentence";
+import { StatusSentence } from "@/components/ui/status-sentence";
+import { Title } from "@/components/ui/title";
+import type { OrderLinePage } from "@/lib/licensing";
+import { FactorTable } from "./factor-table";
+
+const MARKS: Record<string, "tick" | "warn" | "held" | "open"> = {
+  "in force": "tick",
+  "dispute withdrawn": "tick",
+  "payment disputed": "warn",
+  "rights question open": "held",
+};
+
+function MasterList({ line, mayFetch }: { line: OrderLinePage; mayFetch: boolean }) {
+  return (
+    <ul className="mt-1">
+      {line.versions.map(({ recordingId, role, durationS, hasMaster }) => (
+        <li className="py-0.5" key={recordingId}>
+          {role}, {fmt.time(durationS)}:{" "}
+          {mayFetch && hasMaster ? (
+            <a
+              aria-label={`Download the master of ${line.title}, ${role}`}
+              className="link target"
+              href={`/api/records/${line.licenceNumber}/masters/${recordingId}`}
+            >
+              download the master
+            </a>
+          ) : (
+            <span className="text-ink-soft">{hasMaster ? "master ready" : "master being prepared"}</span>
+          )}
+        </li>
+      ))}
+    </ul>
+  );
+}
+
+/** One licence of an order: what it is for, what it costs and why, where it stands, its masters. */
+export function OrderLine({ line, mayFetch }: { line: OrderLinePage; mayFetch: boolean }) {
+  return (
+    <Section
+      className="mt-7"
+      head={
+        <>
+          <Title>{line.title}</Title>{" "}
+          <span className="font-normal text-ink-soft">{line.catalogueNumber}</span>
+        </>
+      }
+      note={line.net}
+    >
+      <p>{line.useWords}.</p>
+      {line.status && line.licenceNumber && (
+        <StatusSentence
+          below={`${fmt.dateTime(line.status.at)}; ${line.status.words}`}
+          className="mt-2"
+          mark={MARKS[line.status.kind] ?? "open"}
+        >
+          <TextLink href={`/records/${line.licenceNumber}`}>{line.licenceNumber}</TextLink>:{" "}
+          {line.status.kind}
+        </StatusSentence>
+      )}
+      <MasterList line={line} mayFetch={mayFetch && line.licenceNumber !== null && line.status !== null} />
+      {line.factors.length > 0 && (
+        <Disclosure className="mt-2" words={`Why ${line.net}`}>
+          <FactorTable currency="" factors={line.factors} />
+          <p className="mt-2">
+            {line.priceSentence}, by card {line.cardVersion}.
+          </p>
+        </Disclosure>
+      )}
+    </Section>
+  );
+}
