@@ -1,4 +1,5 @@
 import type { MasterKey } from "@/fixtures/audio";
+import { env } from "@/lib/kernel/env";
 import { type CaseRow, plantedCases } from "./data/cases";
 import { type CueRow, keyLabel } from "./data/cue-row";
 import { cueTimings, versionsOf } from "./data/cue-timings";
@@ -32,6 +33,9 @@ const INTAKE = {
 } as const;
 const minutes = (from: string, count: number) => new Date(Date.parse(from) + count * 60_000);
 
+/** A shorter form of every cue, for tests. */
+const length = env.DEMO_CUE_SECONDS ? { seconds: env.DEMO_CUE_SECONDS } : {};
+
 export function cueByNumber(number: number): CueRow {
   const cue = cues.find((candidate) => candidate.number === number);
   if (!cue) throw new RangeError(`no cue ${number}`);
@@ -61,7 +65,7 @@ function describe(cue: CueRow): Record<string, unknown> {
     density: cue.density,
     description: cue.description,
     keywords: [...cue.keywords],
-    sections: cueTimings(cue).sections.map((section) => ({
+    sections: cueTimings(cue, length).sections.map((section) => ({
       atS: section.timeS,
       label: section.label,
       energy: section.energy,
@@ -93,7 +97,7 @@ export function cueHandover(world: DemoWorld, number: number, which: "full" | "o
       share: (writer.shareBps / 100).toFixed(2),
     };
   });
-  const versions = versionsOf(cue).filter(
+  const versions = versionsOf(cue, length).filter(
     (version) => !version.role.startsWith("stem:") && (version.role === "full") === (which === "full"),
   );
   return {

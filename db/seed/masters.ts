@@ -12,7 +12,10 @@ export async function renderMaster(key: MasterKey): Promise<string> {
   thread ??= new ThreadHost(new URL("./render-thread.ts", import.meta.url), 2048);
   return thread.call<string>(
     "render",
-    { folder: join(env.MEDIA_DIR, "demonstration"), key },
+    {
+      folder: join(env.MEDIA_DIR, "demonstration"),
+      key: { ...key, ...(env.DEMO_CUE_SECONDS ? { seconds: env.DEMO_CUE_SECONDS } : {}) },
+    },
     { timeoutS: 600 },
   );
 }

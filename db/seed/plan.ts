@@ -1,6 +1,7 @@
 import { z } from "zod";
 import { enqueue } from "@/lib/jobs";
 import { system } from "@/lib/kernel/actor";
+import { env } from "@/lib/kernel/env";
 import { command, open } from "@/lib/kernel/verb";
 import { cues } from "./data/cues";
 
@@ -11,6 +12,8 @@ const LATER_CASES = ["P-02", "P-04", "P-12", "P-17", "P-25"];
 
 const others = cues.map((cue) => cue.number).filter((number) => !FIRST_CUES.includes(number));
 
+const everything = env.DEMO_CUES >= cues.length;
+
 export const plan: readonly string[] = [
   "loop:LP-003",
   "loop:LP-007",
@@ -20,9 +23,13 @@ export const plan: readonly string[] = [
   ...FIRST_CASES.map((id) => `case:${id}`),
   "sale:O-1041",
   "licences:brought-in",
-  ...others.map((number) => `cue:${number}`),
-  ...LATER_CASES.map((id) => `case:${id}`),
-  ...[...FIRST_CUES, ...others].map((number) => `versions:${number}`),
+  ...(everything
+    ? [
+        ...others.map((number) => `cue:${number}`),
+        ...LATER_CASES.map((id) => `case:${id}`),
+        ...[...FIRST_CUES, ...others].map((number) => `versions:${number}`),
+      ]
+    : []),
 ];
 
 /** A turn of the plan as a job: the same turn is one job, whoever asks for it. */

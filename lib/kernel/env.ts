@@ -29,6 +29,9 @@ const Environment = z
     FIELD_KEY: hex32,
     BUSINESS_CLOCK_START: z.iso.datetime().optional(),
     BUSINESS_CLOCK_ANCHOR: z.iso.datetime().optional(),
+    /** How much of the demonstration is brought, and how long its cues are: less and shorter for tests. */
+    DEMO_CUES: z.coerce.number().int().min(1).max(40).default(40),
+    DEMO_CUE_SECONDS: z.coerce.number().min(20).optional(),
     MEDIA_DIR: z.string().default(".data/media"),
     LOG_LEVEL: z.enum(["silent", "fatal", "error", "warn", "info", "debug"]).default("info"),
   })

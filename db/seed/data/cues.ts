@@ -27,7 +27,7 @@ export const cues: readonly CueRow[] = [
     shape: "builds",
     density: "sparse",
     description:
-      "A halting piano figure over one bowed cello; the strings stay out until past the first minute, then open quietly and leave the piano alone at the close.",
+      "A halting piano figure over one bowed cello; the strings stay out until past the first minute, then open quietly and leave piano and cello alone at the close.",
     keywords: [
       "sparse piano",
       "opens late",

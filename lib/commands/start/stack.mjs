@@ -147,9 +147,9 @@ export async function readProgress(siteUrl) {
   try {
     const response = await fetch(`${siteUrl}/api/demo/progress`, { signal: AbortSignal.timeout(10_000) });
     if (!response.ok) return null;
-    const { cuesIn, cuesTotal, step } = await response.json();
+    const { cuesIn, cuesTotal, waiting, step } = await response.json();
     return Number.isInteger(cuesIn) && Number.isInteger(cuesTotal)
-      ? { cuesIn, cuesTotal, step: step ?? "" }
+      ? { cuesIn, cuesTotal, waiting: waiting ?? 0, step: step ?? "" }
       : null;
   } catch {
     return null;
