@@ -48,6 +48,7 @@ export {
 } from "./records/read-licences";
 export { addLicenceStatus } from "./records/record-log";
 export { countryName } from "./records/scope-of-use";
+export { startingCard } from "./starting-card";
 export {
   AUTHORITY_STATEMENT,
   ORDER_STATES,

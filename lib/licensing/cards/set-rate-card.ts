@@ -8,6 +8,7 @@ import { newId } from "@/lib/kernel/ids";
 import { command, query } from "@/lib/kernel/verb";
 import { RateCard } from "../rate-card";
 import { SetRateCard } from "../schemas";
+import { startingCard } from "../starting-card";
 
 export interface CardInForce {
   id: string;
@@ -81,6 +82,8 @@ export interface RateCardScreen {
   libraryName: string;
   currency: string;
   versions: CardInForce[];
+  /** What a new version begins with: the last one, or for a library without a card an example. */
+  startsFrom: RateCard;
 }
 
 /** An owner's or a colleague's own library: every version of its card, the newest first. */
@@ -99,6 +102,12 @@ export const getRateCard = query({
       .from(rateCards)
       .where(eq(rateCards.libraryId, subject.id))
       .orderBy(desc(rateCards.version));
-    return { libraryName: subject.name, currency: subject.currency, versions: rows.map(inForce) };
+    const versions = rows.map(inForce);
+    return {
+      libraryName: subject.name,
+      currency: subject.currency,
+      versions,
+      startsFrom: versions[0]?.card ?? startingCard(subject.currency),
+    };
   },
 });

@@ -3,6 +3,7 @@ import { notFound, redirect } from "next/navigation";
 import { ActButton } from "@/components/account/act-button";
 import { OrderAside } from "@/components/licensing/order-aside";
 import { OrderLine } from "@/components/licensing/order-line";
+import { headOf } from "@/components/licensing/order-words";
 import { Watch } from "@/components/licensing/watch";
 import { TextLink } from "@/components/ui/button";
 import { FactList } from "@/components/ui/facts";
@@ -30,26 +31,6 @@ async function read(id: string): Promise<OrderPage> {
   } catch (error) {
     if (error instanceof NotFound) notFound();
     throw error;
-  }
-}
-
-function headOf(order: OrderPage, isPaidFor: boolean): string {
-  const count = fmt.countWord(order.lines.length, "licence");
-  switch (order.state) {
-    case "proposed":
-      return `Order ${order.number} is proposed: ${count} from ${order.libraryName} for ${order.production.title}, ${order.gross} with tax.`;
-    case "awaiting payment":
-      return isPaidFor
-        ? `Order ${order.number}: the payment is being confirmed.`
-        : `Order ${order.number} is approved and waits for its payment of ${order.gross}.`;
-    case "paid":
-      return `Order ${order.number} is paid. Its records are signed as soon as the masters are ready.`;
-    case "licensed":
-      return `${order.licensee.name} holds ${count} from ${order.libraryName} for ${order.production.title}.`;
-    case "refused":
-      return `Order ${order.number} was not licensed, and its payment goes back in full.`;
-    case "withdrawn":
-      return `Order ${order.number} was withdrawn; nothing was licensed.`;
   }
 }
 
