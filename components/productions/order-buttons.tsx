@@ -51,7 +51,7 @@ export function OrderButtons({ productionId, lines, use, placeOrder }: OrderButt
           onClick={() => order(library)}
           wide
         >
-          Order from {library.split(" ")[0]}, {sumOf(ready.filter((line) => line.libraryName === library))}
+          Order from {library}, {sumOf(ready.filter((line) => line.libraryName === library))}
         </Button>
       ))}
       {problem && <Problem live>{problem}</Problem>}

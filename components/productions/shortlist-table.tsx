@@ -51,7 +51,7 @@ export function PriceFooting({
       {useWords && (
         <p>
           Each is for {useWords}
-          {priced?.price ? `: ${priced.price.sentence}` : ""}.
+          {priced?.price ? `: ${priced.price.sentence.replaceAll(" × ", "\u00a0×\u00a0")}` : ""}.
         </p>
       )}
       {priced?.price && (

@@ -48,9 +48,9 @@ export function CueRow({ cue, scaleS, shortlist, isShortlisted, priceFor }: CueR
   return (
     <li
       className={cx(
-        "border-t py-2.5 first:border-t-line",
+        "border-t py-2.5",
         isOpen
-          ? "-mx-4 border-ink px-4 sm:-mx-6 sm:px-6 lg:-mx-10 lg:px-10 [&+li]:border-ink"
+          ? "-mx-4 border-y border-ink px-4 sm:-mx-6 sm:px-6 lg:-mx-10 lg:px-10 [&+li]:border-t-0"
           : "border-line",
       )}
       data-cue={cue.number}

@@ -116,7 +116,8 @@ export function detailOf(cue: CuePage, { pieces }: ScreeningOfCue): FoundDetail 
     letter: letterOf(index),
     fromS: section.atS,
     toS: cue.sections[index + 1]?.atS ?? cue.durationS,
-    words: section.label,
+    // A form's own letters would stand beside the chart's and contradict them.
+    words: section.label.length > 1 ? section.label : "",
     lufs: cue.sectionLoudness?.[index] ?? null,
   }));
   return {
