@@ -79,10 +79,17 @@ export async function splitAt(reader: Reader, familyId: string, at: Date) {
   };
 }
 
+interface WriterNow {
+  personId: string | null;
+  name: string;
+  shareBps: number;
+  /** Null while the writer has been named by somebody else and has not answered. */
+  acceptedAt: Date | null;
+}
+
 /** The newest split's writers of each family, by family id. */
 export async function splitsNow(reader: Reader, familyIds: readonly string[]) {
-  if (familyIds.length === 0)
-    return new Map<string, { personId: string | null; name: string; shareBps: number }[]>();
+  if (familyIds.length === 0) return new Map<string, WriterNow[]>();
   const rows = await reader
     .select({
       familyId: splitVersions.familyId,
@@ -91,6 +98,7 @@ export async function splitsNow(reader: Reader, familyIds: readonly string[]) {
       personId: splitShares.personId,
       name: splitShares.name,
       shareBps: splitShares.shareBps,
+      acceptedAt: splitShares.acceptedAt,
     })
     .from(splitShares)
     .innerJoin(splitVersions, eq(splitVersions.id, splitShares.splitVersionId))
@@ -98,12 +106,12 @@ export async function splitsNow(reader: Reader, familyIds: readonly string[]) {
     .orderBy(asc(splitVersions.version), asc(splitShares.position));
   const newest = new Map<string, number>();
   for (const row of rows) newest.set(row.familyId, Math.max(row.version, newest.get(row.familyId) ?? 0));
-  const byFamily = new Map<string, { personId: string | null; name: string; shareBps: number }[]>();
+  const byFamily = new Map<string, WriterNow[]>();
   for (const row of rows) {
     if (row.side !== "writer" || row.version !== newest.get(row.familyId)) continue;
     byFamily.set(row.familyId, [
       ...(byFamily.get(row.familyId) ?? []),
-      { personId: row.personId, name: row.name, shareBps: row.shareBps },
+      { personId: row.personId, name: row.name, shareBps: row.shareBps, acceptedAt: row.acceptedAt },
     ]);
   }
   return byFamily;

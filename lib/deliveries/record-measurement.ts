@@ -190,7 +190,9 @@ async function deliveredBefore(
     same.map((recording) => recording.familyId),
   );
   const own = same.find((recording) =>
-    writers.get(recording.familyId)?.some((writer) => writer.personId === delivererId),
+    writers
+      .get(recording.familyId)
+      ?.some((writer) => writer.acceptedAt !== null && writer.personId === delivererId),
   );
   if (!own) return null;
   const [family] = await familiesByIds(tx, [own.familyId]);

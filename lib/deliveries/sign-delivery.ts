@@ -276,7 +276,7 @@ async function joinFamily(
     family &&
     family.libraryId === args.delivery.libraryId &&
     (args.delivery.delivererKind !== "composer" ||
-      writers.some((writer) => writer.personId === args.actorPersonId));
+      writers.some((writer) => writer.acceptedAt !== null && writer.personId === args.actorPersonId));
   if (!family || !mayLink)
     throw new NotFound("That family is not held in this library, or you are not one of its writers.");
   const present = await recordingsOfFamily(tx, family.id);

@@ -264,7 +264,9 @@ async function gatherFacts(tx: Tx, found: readonly FoundHit[]) {
       familyId: recording.familyId,
       libraryId: recording.libraryId,
       writerIds:
-        writers.get(recording.familyId)?.flatMap((share) => (share.personId ? [share.personId] : [])) ?? [],
+        writers
+          .get(recording.familyId)
+          ?.flatMap((share) => (share.personId && share.acceptedAt ? [share.personId] : [])) ?? [],
       title: family?.title ?? "",
     });
   }

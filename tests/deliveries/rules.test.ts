@@ -204,6 +204,15 @@ describe("DELIVERIES-3 and DELIVERIES-4: what software returns, and what it scre
     );
   });
 
+  test("DELIVERIES-4: who was named as a writer by somebody else and has not accepted is questioned like anybody", async () => {
+    const before = await makeDraft(composer, both());
+    await signDraft(composer, before.deliveryId);
+    const held = (await getDelivery(composer, { deliveryId: before.deliveryId })).versions[0];
+    const { deliveryId } = await startDelivery(coWriter, { title: freshTitle() });
+    await arriveMeasured({ deliveryId, personId: celandine.id, sha256: held?.sha256 ?? "" });
+    expect((await getDelivery(coWriter, { deliveryId })).versions[0]?.state).toBe("measured");
+  });
+
   test("DELIVERIES-4: the same bytes from somebody else are not returned by software", async () => {
     const before = await makeDraft(composer, alone());
     await signDraft(composer, before.deliveryId);
@@ -331,6 +340,18 @@ describe("DELIVERIES-7: who may add versions to a family, and who sees a deliver
     await expect(signDraft(coWriter, theirs.deliveryId)).rejects.toThrow(NotFound);
     const own = await makeDraft(composer, alone(), { linkedFamilyId });
     expect((await signDraft(composer, own.deliveryId)).familyId).toBe(linkedFamilyId);
+  });
+
+  test("DELIVERIES-7: a writer who was named and has not accepted may not add to it yet", async () => {
+    const { deliveryId } = await makeDraft(composer, both());
+    await signDraft(composer, deliveryId);
+    const [row] = await db().select().from(deliveries).where(eq(deliveries.id, deliveryId));
+    const linked = { linkedFamilyId: row?.familyId ?? "" };
+    const own = [{ name: celandine.name, ipi: celandine.ipi, share: "100.00" }];
+    const theirs = await makeDraft(coWriter, own, linked);
+    await expect(signDraft(coWriter, theirs.deliveryId)).rejects.toThrow(NotFound);
+    await answerSplit(coWriter, { deliveryId, accept: true });
+    expect((await signDraft(coWriter, theirs.deliveryId)).familyId).toBe(linked.linkedFamilyId);
   });
 
   test("another composer's delivery, and one of another library, answer like one that does not exist", async () => {
