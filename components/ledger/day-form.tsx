@@ -10,7 +10,6 @@ export function DayForm({ at }: { at: Date }) {
         hint="Days begin and end in UTC."
         label="As it stood on"
         name="at"
-        optional
         type="date"
       />
       <Button type="submit">Show that day</Button>

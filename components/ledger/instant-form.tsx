@@ -10,7 +10,6 @@ export function InstantForm({ at }: { at: Date }) {
         hint="Date and time in UTC, the second included."
         label="Instant"
         name="at"
-        optional
         step={1}
         type="datetime-local"
       />

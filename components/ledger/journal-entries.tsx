@@ -3,6 +3,7 @@ import { Section, Sentence } from "@/components/ui/sentence";
 import { Table } from "@/components/ui/table";
 import { formatMoney } from "@/lib/kernel/money";
 import type { JournalEntry } from "@/lib/ledger";
+import { accountInWords } from "./trial-table";
 
 type Net = JournalEntry["nets"][number];
 
@@ -24,7 +25,7 @@ export function JournalEntries({ entries }: { entries: readonly JournalEntry[] }
           caption={`${entry.name}, posted ${fmt.dateTime(entry.postedAt)}, ${entry.entryId}`}
           captionHidden
           columns={[
-            { key: "account", head: "Account", cell: (net) => net.account },
+            { key: "account", head: "Account", cell: (net) => accountInWords(net.account) },
             {
               key: "debit",
               head: "Debit",
@@ -42,7 +43,7 @@ export function JournalEntries({ entries }: { entries: readonly JournalEntry[] }
           rows={nets}
           sentence={(net) => (
             <>
-              {net.debitMinor > 0n ? "Debit" : "Credit"} {net.account}:{" "}
+              {accountInWords(net.account)}, {net.debitMinor > 0n ? "debit" : "credit"}:{" "}
               <b className="font-strong">{size(net)}</b>
             </>
           )}

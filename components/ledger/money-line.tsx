@@ -8,13 +8,14 @@ interface MoneyLineProps {
   of?: string | undefined;
   /** What the line opens into. */
   parts?: ReactNode;
+  /** The heading's rule stands above it already. */
   isFirst?: boolean;
 }
 
 /** One dated sentence with its amount; under 640 px the date and amount share a line above it. */
 export function MoneyLine({ date, children, amount, of, parts, isFirst }: MoneyLineProps) {
   return (
-    <li className={`border-t py-3 ${isFirst ? "border-ink" : "border-line in-[.buff]:border-buff-2"}`}>
+    <li className={isFirst ? "pt-1 pb-3" : "border-t border-line py-3 in-[.buff]:border-buff-2"}>
       <div className="grid grid-cols-[minmax(0,1fr)_auto] gap-x-4 sm:grid-cols-[5.25rem_minmax(0,1fr)_auto]">
         <span className="text-ink-soft">{date}</span>
         <div className="order-last col-span-2 max-w-measure sm:order-none sm:col-span-1">{children}</div>

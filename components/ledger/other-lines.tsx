@@ -30,8 +30,12 @@ export function LineWords({ line, currency }: { line: StatementLine; currency: s
         {sale.buyer && ` to ${sale.buyer}`}
         {sale.productionTitle && ` for ${sale.productionTitle}`}: {sale.scopeWords}. Order{" "}
         <span className="whitespace-nowrap">{sale.orderNumber}</span>
-        {sale.licenceNumber && `, licence ${sale.licenceNumber}`}.
-        {line.code !== "capture" && line.code !== "hold ends" && ` ${line.reason}`}
+        {sale.licenceNumber && (
+          <>
+            , licence <span className="whitespace-nowrap">{sale.licenceNumber}</span>
+          </>
+        )}
+        .{line.code !== "capture" && line.code !== "hold ends" && ` ${line.reason}`}
       </>
     );
   return (

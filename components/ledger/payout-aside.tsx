@@ -8,7 +8,7 @@ import { RunPayouts, RunSteps } from "./payout-run";
 
 function Due({ due }: { due: readonly DueNow[] }) {
   const some = due.filter(({ payees }) => payees.length > 0);
-  if (some.length === 0) return <Sentence>Nothing is available to be paid out.</Sentence>;
+  if (some.length === 0) return <Sentence>No run was prepared.</Sentence>;
   return (
     <>
       <Sentence className="mb-2">No run is prepared. Available now:</Sentence>

@@ -73,7 +73,7 @@ export function RunSteps({ run }: { run: Omit<PayoutRunView, "payouts"> }) {
       </StatusSentence>
     );
   return (
-    <ol className="grid gap-2">
+    <ol className="grid content-start gap-2">
       <StatusSentence as="li" mark="done">
         Prepared by {run.preparedBy} on {fmt.dateTime(run.preparedAt)}
       </StatusSentence>

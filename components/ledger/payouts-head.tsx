@@ -23,7 +23,9 @@ export function payoutsHead(runs: readonly PayoutRunView[], isMarketplace: boole
   const payees = fmt.countWord(run.payouts.filter(isToPay).length, "payee");
   const carried = run.payouts.filter(({ state }) => state === "carried").length;
   const rest =
-    carried > 0 ? ` ${carried === 1 ? "One more is" : `${carried} more are`} carried forward.` : "";
+    carried > 0
+      ? ` ${carried === 1 ? "One more is" : `${fmt.countWord(carried, "more", "more").replace(/^./, (letter) => letter.toUpperCase())} are`} carried forward.`
+      : "";
   switch (run.state) {
     case "prepared":
       return run.payouts.some(isToPay)

@@ -42,7 +42,7 @@ function Confirm({ runs }: { runs: readonly PayoutRunView[] }) {
         words="Confirm as the second person"
       />
       {more.length > 0 && (
-        <Sentence className="mt-3">{fmt.countWord(more.length, "more run")} after this.</Sentence>
+        <Sentence className="mt-3">{fmt.count(more.length, "more run")} after this.</Sentence>
       )}
     </>
   );
@@ -84,7 +84,7 @@ function PrepareAndRelease({
       {some.map(({ currency, payees }) => (
         <div className="mb-3" key={currency}>
           <Sentence className="mb-2">
-            {fmt.countWord(payees.length, "balance")} in {currency}.
+            {fmt.count(payees.length, "balance")} in {currency}, of the library and its writers.
             {run && " Preparing again takes the place of the run above."}
           </Sentence>
           <ActButton

@@ -48,11 +48,15 @@ export function SaleLines({ lines }: { lines: readonly SaleLine[] }) {
         const words = standing(line);
         return (
           <MoneyLine
-            amount={money(line.libraryMinor)}
+            amount={money(line.keptMinor)}
             date={fmt.dayMonth(line.soldAt)}
             isFirst={index === 0}
             key={line.orderLineId}
-            of={`of ${money(line.netMinor)} net`}
+            of={
+              line.keptMinor === line.libraryMinor
+                ? `of ${money(line.netMinor)} net`
+                : `${money(line.libraryMinor)} when sold`
+            }
             parts={<SaleParts isOpen={index === 0} line={line} />}
           >
             <p>

@@ -25,31 +25,37 @@ function shares(heldMinor: bigint, availableMinor: bigint, money: (minor: bigint
   return `${money(availableMinor)} of it available and ${money(heldMinor)} held`;
 }
 
-function owedOf({ currency, heldMinor, availableMinor }: SalesOfCurrency) {
+function standingOf({ currency, heldMinor, availableMinor }: SalesOfCurrency, isPast: boolean) {
   const money = (minor: bigint) => formatMoney({ minor, currency });
   const total = heldMinor + availableMinor;
+  const figure = money(total);
   if (total < 0n)
     return {
-      figure: money(total),
-      rest: "after refunds and disputes of what was already paid. It comes off coming sales and is never taken from a bank.",
+      verb: isPast ? "stood at" : "stands at",
+      figure,
+      rest: " after refunds and disputes of what was already paid. It comes off coming sales and is never taken from a bank.",
     };
-  if (total === 0n) return { figure: money(0n), rest: "so nothing waits to be paid." };
-  return { figure: money(total), rest: `${shares(heldMinor, availableMinor, money)}.` };
+  const verb = isPast ? "was owed" : "is owed";
+  if (total === 0n) return { verb, figure, rest: ": nothing waits to be paid." };
+  return { verb, figure, rest: `, ${shares(heldMinor, availableMinor, money)}.` };
 }
 
 /** The first sentence of the owner's money. */
 export function SalesHead({ sales, place, isPast }: { sales: Sales; place: string; isPast: boolean }) {
   const library = sales.currencies[0]?.lines[0]?.libraryName ?? "The library";
-  const owed = sales.currencies.map(owedOf);
   return (
     <HeadSentence place={place} size="huge">
-      On {fmt.date(sales.at)} {library} {isPast ? "was" : "is"} owed{" "}
-      {owed.map(({ figure, rest }, index) => (
-        <span key={figure}>
-          {index > 0 && " It is also owed "}
-          <b>{figure}</b>, {rest}
-        </span>
-      ))}
+      On {fmt.date(sales.at)} {library}{" "}
+      {sales.currencies.map((one, index) => {
+        const { verb, figure, rest } = standingOf(one, isPast);
+        return (
+          <span key={one.currency}>
+            {index > 0 && ` In ${one.currency} it `}
+            {verb} <b className="whitespace-nowrap">{figure}</b>
+            {rest}
+          </span>
+        );
+      })}
     </HeadSentence>
   );
 }

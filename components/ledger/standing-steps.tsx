@@ -14,7 +14,7 @@ export function StandingSteps({ steps }: { steps: readonly Step[] }) {
     <ol className="mt-6 grid gap-4 sm:auto-cols-fr sm:grid-flow-col sm:gap-6">
       {steps.map((step, index) => (
         <li className="grid grid-cols-[1.4375rem_minmax(0,1fr)] sm:block" key={step.key}>
-          <span className="flex items-center gap-1.5 pt-[0.22em] sm:pt-0">
+          <span className="flex items-center gap-1.5 self-start pt-[0.22em] sm:pt-0">
             <Mark kind={step.mark} sizePx={15} />
             {index < steps.length - 1 && (
               <span aria-hidden className="-mr-5 hidden h-0 grow border-t-[1.5px] border-ink sm:block" />

@@ -7,18 +7,36 @@ import type { Statement, StatementLine } from "@/lib/ledger";
 import { MoneyLine } from "./money-line";
 import { LineWords } from "./other-lines";
 
-/** The month in one sentence. */
-export function statementHead(statements: readonly Statement[], month: string): string {
+function Amount({ minor, currency }: { minor: bigint; currency: string }) {
+  return <span className="whitespace-nowrap">{formatMoney({ minor, currency })}</span>;
+}
+
+/** The month in one sentence a currency. */
+export function StatementHead({ statements, month }: { statements: readonly Statement[]; month: string }) {
   if (statements.length === 0) return `Nothing moved in ${month}, and nothing was owed.`;
-  return statements
-    .map(({ currency, openingMinor, closingMinor, lines }) => {
-      const money = (minor: bigint) => formatMoney({ minor, currency });
-      if (lines.length === 0) return `Nothing moved in ${month}; the balance stayed ${money(closingMinor)}.`;
-      const paid = lines.reduce((sum, line) => (line.code === "payout" ? sum - line.amountMinor : sum), 0n);
-      const end = paid > 0n ? `; ${money(paid)} was paid out` : "";
-      return `In ${month} the balance went from ${money(openingMinor)} to ${money(closingMinor)}${end}.`;
-    })
-    .join(" ");
+  return statements.map(({ currency, openingMinor, closingMinor, lines }) => {
+    const closing = <Amount currency={currency} minor={closingMinor} />;
+    const paid = lines.reduce((sum, line) => (line.code === "payout" ? sum - line.amountMinor : sum), 0n);
+    return (
+      <span key={currency}>
+        {lines.length === 0 ? (
+          <>
+            Nothing moved in {month}; the balance stayed {closing}.{" "}
+          </>
+        ) : (
+          <>
+            In {month} the balance went from <Amount currency={currency} minor={openingMinor} /> to {closing}
+            {paid > 0n && (
+              <>
+                ; <Amount currency={currency} minor={paid} /> was paid out
+              </>
+            )}
+            .{" "}
+          </>
+        )}
+      </span>
+    );
+  });
 }
 
 /** How a sale came to this amount: net, fees, pool, share. */

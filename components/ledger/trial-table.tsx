@@ -2,8 +2,12 @@ import { Table } from "@/components/ui/table";
 import { formatMoney } from "@/lib/kernel/money";
 import type { TrialBalance, TrialRow } from "@/lib/ledger";
 
+/** "VAT payable, GB" */
+export const accountInWords = (name: string) =>
+  name.startsWith("vat ") ? `VAT ${name.slice(4)}` : name.charAt(0).toUpperCase() + name.slice(1);
+
 const nameOf = ({ kind, holder }: TrialRow) => {
-  const name = kind === "vat payable" ? "VAT payable" : kind.charAt(0).toUpperCase() + kind.slice(1);
+  const name = accountInWords(kind);
   return holder === null ? name : `${name}, ${holder}`;
 };
 

@@ -38,7 +38,7 @@ export default async function SalesPage({ searchParams }: { searchParams: Search
     <Page
       aside={
         <>
-          <PayoutAside due={due} runs={runs} />
+          <PayoutAside due={at ? [] : due} runs={runs.filter(({ preparedAt }) => preparedAt <= sales.at)} />
           <DayForm at={sales.at} />
         </>
       }

@@ -1,6 +1,6 @@
 import type { Metadata } from "next";
 import { notFound, redirect } from "next/navigation";
-import { StatementOfOneCurrency, statementHead } from "@/components/ledger/statement";
+import { StatementHead, StatementOfOneCurrency } from "@/components/ledger/statement";
 import { ButtonLink, TextLink } from "@/components/ui/button";
 import { Page } from "@/components/ui/page";
 import { HeadSentence, Sentence } from "@/components/ui/sentence";
@@ -39,7 +39,7 @@ export default async function StatementPage({ params }: { params: Promise<{ peri
         }
         place={`Statement of ${month}, as ${roles.find((role) => role.current)?.label}`}
       >
-        {statementHead(statements, month)}
+        <StatementHead month={month} statements={statements} />
       </HeadSentence>
       {statements.map((statement) => (
         <StatementOfOneCurrency key={statement.currency} statement={statement} />
