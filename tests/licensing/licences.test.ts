@@ -84,7 +84,7 @@ async function offline(
         ["sedgewren-verify.mjs", "record.json", "keys.json", "--json", ...more],
         {
           cwd: folder,
-          env: {},
+          env: { NODE_ENV: "test" },
           encoding: "utf8",
         },
       );
@@ -129,7 +129,9 @@ describe("a licence record", () => {
     const keys = await listKeys(ANONYMOUS, {});
     expect(verifyRecord(JSON.stringify(file), keys)).toMatchObject({ verdict: "genuine", failing: [] });
     expect(await offline(file)).toMatchObject({ code: 0, answer: { verdict: "genuine" } });
-    const altered = structuredClone(file) as { disclosed: Record<string, { value: { net: string } }> };
+    const altered = structuredClone(file) as unknown as {
+      disclosed: Record<string, { value: { net: string } }>;
+    };
     const fee = altered.disclosed["fee.details"];
     if (fee) fee.value.net = "340.00";
     expect(await verifyFile(ANONYMOUS, { text: JSON.stringify(altered) })).toMatchObject({

@@ -129,7 +129,7 @@ export async function catalogueFacts(
         versions: await versionsOf(reader, family.id, recordingIds),
       },
       shares,
-      recording: { owner: library.name, performers: [], phonogramLine: `℗ ${year} ${library.name}` },
+      recording: { owner: library.name, performers: [], phonogramLine: `(P) ${year} ${library.name}` },
       screening: await screeningOf(reader, family),
       claimsContact: claimsContactOf(library),
     },
