@@ -82,9 +82,7 @@ export function ShortlistEntry({ line, scaleS, actions, inFull }: ShortlistEntry
                 Note and version
               </Button>
             )}
-            {line.unavailable && (
-              <TextLink href={`/find?text=${encodeURIComponent(line.title)}`}>Find one near it</TextLink>
-            )}
+            {line.unavailable && <TextLink href={line.nearHref}>Find cues near it</TextLink>}
           </p>
           {isChanging && (
             <ChangeForm

@@ -9,6 +9,8 @@ export interface ShortlistLine {
   libraryName: string;
   libraryCode: string;
   currency: string;
+  /** A search for cues like it. */
+  nearHref: string;
   state: ShortlistState;
   note: string;
   addedBy: string;

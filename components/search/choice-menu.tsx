@@ -54,7 +54,7 @@ export function ChoiceMenu(props: ChoiceMenuProps) {
           </button>
         }
       />
-      <span className="contents" ref={setPlace} />
+      <span className="contents [&>div]:contents" ref={setPlace} />
       <Menu.Portal container={place}>
         <Menu.Positioner align="start" className="z-50" positionMethod="fixed" sideOffset={6}>
           <Menu.Popup

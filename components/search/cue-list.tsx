@@ -18,6 +18,8 @@ export interface ListProduction {
   id: string;
   /** "episode 4" */
   words: string;
+  /** Whether it says what it is licensed for, so that its shortlist can be priced. */
+  hasUse: boolean;
   /** Families on its shortlist. */
   families: readonly string[];
 }
@@ -26,6 +28,8 @@ export type ShortlistAction = (input: {
   productionId: string;
   recordingId: string;
 }) => Promise<{ ok: boolean; message?: string }>;
+
+export type PriceAction = (input: { productionId: string }) => Promise<{ ok: boolean; message?: string }>;
 
 interface CueListProps {
   brief: Brief;
@@ -36,6 +40,7 @@ interface CueListProps {
   empty: (onSale: number) => ReactNode;
   production: ListProduction | null;
   shortlist?: ShortlistAction | undefined;
+  priceProduction?: PriceAction | undefined;
 }
 
 const POLL_MS = 60_000;
@@ -51,7 +56,7 @@ async function readPage(query: string, productionId: string | null, page: number
 
 /** What a brief finds: paged, polled, and heard in place. Its first page comes with the document. */
 export function CueList(props: CueListProps) {
-  const { brief, first, firstQuery, head, empty, production, shortlist } = props;
+  const { brief, first, firstQuery, head, empty, production, shortlist, priceProduction } = props;
   const query = briefQuery(brief);
   const list = useInfiniteQuery({
     queryKey: ["cues", query, production?.id ?? null],
@@ -66,7 +71,7 @@ export function CueList(props: CueListProps) {
   const cues = pages.flatMap((page) => page.cues);
   const newest = pages.at(-1) ?? first;
   const scaleS = listScaleS(cues.map((cue) => cue.durationS));
-  const keep = useShortlisting(production, shortlist);
+  const keep = useShortlisting(production, shortlist, priceProduction);
   useListKeys(cues, keep.add);
   return (
     <>
@@ -110,7 +115,11 @@ export function CueList(props: CueListProps) {
 }
 
 /** Shortlisting, with what has just been added known before the page has been read again. */
-function useShortlisting(production: ListProduction | null, shortlist: ShortlistAction | undefined) {
+function useShortlisting(
+  production: ListProduction | null,
+  shortlist: ShortlistAction | undefined,
+  price: PriceAction | undefined,
+) {
   const [added, setAdded] = useState<readonly string[]>([]);
   const add = async (familyId: string, recordingId: string, title: string) => {
     if (!production || !shortlist) return;
@@ -118,6 +127,7 @@ function useShortlisting(production: ListProduction | null, shortlist: Shortlist
     if (answer.ok) {
       setAdded((before) => [...before, `${production.id}:${familyId}`]);
       notify({ title: `${title} is on the shortlist.` });
+      if (production.hasUse) await price?.({ productionId: production.id });
     } else notify({ title: answer.message ?? "It could not be put on the shortlist." });
   };
   const has = (familyId: string) =>

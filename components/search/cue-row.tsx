@@ -110,7 +110,7 @@ function Price({ cue, priceFor }: { cue: FoundCue; priceFor: string | null }) {
     return (
       <span>
         <b className="font-label">{price.text}</b>
-        {priceFor ? ` for ${priceFor}.` : "."}
+        {priceFor ? ` for ${priceFor.replace(/ (?=\d)/, "\u00a0")}.` : "."}
       </span>
     );
   if (price.kind === "from") return <span className="whitespace-nowrap">{price.sentence}.</span>;

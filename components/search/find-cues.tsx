@@ -10,7 +10,7 @@ import type { Brief } from "@/lib/catalogue/schemas";
 import { briefOf, briefParams, isEmptyBrief, valuesOf } from "./brief-params";
 import { briefQuery } from "./brief-query";
 import { BriefSentence, FurtherWords } from "./brief-sentence";
-import { CueList, type ListProduction, type ShortlistAction } from "./cue-list";
+import { CueList, type ListProduction, type PriceAction, type ShortlistAction } from "./cue-list";
 import type { FoundPage } from "./find-types";
 
 export interface FindCuesProps {
@@ -20,10 +20,12 @@ export interface FindCuesProps {
   libraries: readonly { code: string; name: string }[];
   production: ListProduction | null;
   shortlist?: ShortlistAction | undefined;
+  priceProduction?: PriceAction | undefined;
 }
 
 /** The brief and what it finds. */
-export function FindCues({ first, firstQuery, libraries, production, shortlist }: FindCuesProps) {
+export function FindCues(props: FindCuesProps) {
+  const { first, firstQuery, libraries, production, shortlist, priceProduction } = props;
   const [values, setValues] = useQueryStates(briefParams, { history: "push" });
   const brief = useMemo(() => briefOf(values), [values]);
   const change = (changes: Partial<Brief>) => setValues(valuesOf({ ...brief, ...changes }));
@@ -55,6 +57,7 @@ export function FindCues({ first, firstQuery, libraries, production, shortlist }
             </p>
           </div>
         )}
+        priceProduction={priceProduction}
         production={production}
         shortlist={shortlist}
       />

@@ -41,7 +41,7 @@ export function RangePopover(props: RangePopoverProps) {
           </button>
         }
       />
-      <span className="contents" ref={setPlace} />
+      <span className="contents [&>div]:contents" ref={setPlace} />
       <Popover.Portal container={place}>
         <Popover.Positioner align="start" className="z-50" positionMethod="fixed" sideOffset={6}>
           <Popover.Popup

@@ -72,5 +72,8 @@ export function versionRoleLabel(id: string): string {
   const role = findVersionRole(id);
   if (!role) return id;
   const colon = id.indexOf(":");
-  return colon < 0 ? role.label : `${role.label} ${id.slice(colon + 1)}`;
+  if (colon < 0) return role.label;
+  const name = id.slice(colon + 1);
+  if (role.id === "treated:") return name;
+  return role.id === "only:" ? `${name} only` : `${role.label} ${name}`;
 }

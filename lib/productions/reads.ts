@@ -3,7 +3,7 @@ import { z } from "zod";
 import type { Reader } from "@/db/client";
 import { productions, shortlistItems } from "@/db/schema/productions";
 import { peopleByIds } from "@/lib/accounts";
-import { type Availability, type CueVersion, contoursOf, cueCards } from "@/lib/catalogue";
+import { type Availability, type CueCard, type CueVersion, contoursOf, cueCards } from "@/lib/catalogue";
 import { open, query } from "@/lib/kernel/verb";
 import { ownProduction } from "./own-production";
 import type { ShortlistState } from "./states";
@@ -30,6 +30,8 @@ export interface ShortlistCue {
     number: string;
     title: string;
     library: { id: string; code: string; name: string; currency: string };
+    terms: CueCard["terms"];
+    bpm: number | null;
     availability: Availability;
     versions: CueVersion[];
     ending: string;
@@ -122,7 +124,7 @@ async function shortlistCues(reader: Reader, productionId: string): Promise<Shor
   return items.flatMap((item) => {
     const card = cards.get(item.familyId);
     if (!card) return [];
-    const { familyId, number, title, library, availability, versions, ending } = card;
+    const { familyId, number, title, library, terms, bpm, availability, versions, ending } = card;
     return [
       {
         itemId: item.id,
@@ -131,7 +133,7 @@ async function shortlistCues(reader: Reader, productionId: string): Promise<Shor
         addedBy: people.get(item.addedBy)?.name ?? "somebody who has left",
         addedAt: item.addedAt,
         priceSnapshot: item.priceSnapshot,
-        cue: { familyId, number, title, library, availability, versions, ending },
+        cue: { familyId, number, title, library, terms, bpm, availability, versions, ending },
         version: versions.find((version) => version.recordingId === item.recordingId) ?? null,
         contour: contours.get(item.recordingId) ?? null,
       },

@@ -9,7 +9,7 @@ import { listLibraries, readBrief } from "@/lib/catalogue";
 import { NotFound } from "@/lib/kernel/errors";
 import { getProduction, listProductions, type ProductionPage } from "@/lib/productions";
 import { viewer } from "@/lib/web";
-import { addToShortlist } from "../actions";
+import { addToShortlist, priceProduction } from "../actions";
 import { productionWords } from "../productions/shortlist-lines";
 import { readProductionUse } from "../productions/use-of-production";
 import { foundPage } from "./found";
@@ -46,10 +46,12 @@ export default async function FindPage({ searchParams }: { searchParams: Promise
       production={
         production && {
           id: production.id,
+          hasUse: production.use !== null,
           words: production.episode ?? production.title,
           families: production.shortlist.map((item) => item.cue.familyId),
         }
       }
+      priceProduction={isBuyer ? priceProduction : undefined}
       shortlist={isBuyer ? addToShortlist : undefined}
     />
   );

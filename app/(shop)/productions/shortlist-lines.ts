@@ -1,8 +1,10 @@
 import "server-only";
 import { z } from "zod";
 import type { ShortlistLine } from "@/components/productions/shortlist-line";
+import { briefQuery } from "@/components/search/brief-query";
 import { fmt } from "@/components/ui/format";
 import type { Availability } from "@/lib/catalogue";
+import { Brief } from "@/lib/catalogue/schemas";
 import type { ProductionPage, ShortlistCue } from "@/lib/productions";
 
 const Snapshot = z.looseObject({
@@ -27,10 +29,24 @@ export function unavailableWords(availability: Availability): string | null {
 }
 
 export function shortlistLines(production: ProductionPage): ShortlistLine[] {
-  return production.shortlist.map(shortlistLine);
+  return production.shortlist.map((item) => shortlistLine(production.id, item));
 }
 
-function shortlistLine({ cue, version, ...item }: ShortlistCue): ShortlistLine {
+const NEAR_BPM = 15;
+
+/** A brief that the cue itself would fit: for a replacement. */
+function nearQuery({ terms, bpm }: ShortlistCue["cue"]): string {
+  return briefQuery(
+    Brief.parse({
+      moods: terms.mood,
+      lead: terms.instrument.slice(0, 2),
+      bpmFrom: bpm === null ? null : Math.max(20, Math.round(bpm) - NEAR_BPM),
+      bpmTo: bpm === null ? null : Math.min(400, Math.round(bpm) + NEAR_BPM),
+    }),
+  );
+}
+
+function shortlistLine(productionId: string, { cue, version, ...item }: ShortlistCue): ShortlistLine {
   const price = Snapshot.safeParse(item.priceSnapshot);
   const plain = ({ recordingId, label, durationS }: ShortlistCue["cue"]["versions"][number]) => ({
     recordingId,
@@ -45,6 +61,7 @@ function shortlistLine({ cue, version, ...item }: ShortlistCue): ShortlistLine {
     libraryName: cue.library.name,
     libraryCode: cue.library.code,
     currency: cue.library.currency,
+    nearHref: `/find?${nearQuery(cue)}&production=${productionId}`,
     state: item.state,
     note: item.note,
     addedBy: item.addedBy,

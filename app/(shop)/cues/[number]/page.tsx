@@ -67,7 +67,10 @@ export default async function CueScreen({ params, searchParams }: Props) {
       {cue.sections.length > 0 && (
         <Sentence className="mt-3" soft>
           {detail.sections
-            .map((section, index) => `${letterOf(index)} ${section.words} from ${fmt.time(section.fromS)}`)
+            .map(
+              (section, index) =>
+                `${[letterOf(index), section.words].filter(Boolean).join(" ")} from ${fmt.time(section.fromS)}`,
+            )
             .join(", ")}
           .
         </Sentence>

@@ -31,15 +31,15 @@ export default async function LibraryScreen({ params }: Props) {
   const { actor, library } = await readLibrary((await params).code);
   const brief = Brief.parse({ library: library.code });
   const first = await foundPage(actor, brief, { page: 0, productionId: null });
-  const place = `${library.place}, sells in ${CURRENCY_WORDS[library.currency] ?? library.currency}`;
   return (
     <Page>
       <HeadSentence
         links={<TextLink href={`/find?library=${library.code}`}>Search within it</TextLink>}
         place="A library on this service"
       >
-        {library.name} in {place}
-        {library.character ? `: ${library.character}` : ""}.
+        {library.name}, of {library.place}
+        {library.character ? `: ${library.character}` : ""}. It sells in{" "}
+        {CURRENCY_WORDS[library.currency] ?? library.currency}.
       </HeadSentence>
       <div className="mt-6">
         <LibraryCues brief={brief} first={first} name={library.name} />
