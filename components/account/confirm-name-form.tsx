@@ -2,6 +2,7 @@
 
 import { zodResolver } from "@hookform/resolvers/zod";
 import { useForm } from "react-hook-form";
+import type { z } from "zod";
 import { confirmWriter } from "@/app/(account)/actions";
 import { Button } from "@/components/ui/button";
 import { TextField } from "@/components/ui/field";
@@ -17,7 +18,10 @@ interface ConfirmNameFormProps {
 
 export function ConfirmNameForm({ writer, isConfirmed, onDone }: ConfirmNameFormProps) {
   const confirm = useAct(confirmWriter);
-  const form = useForm({ resolver: zodResolver(ConfirmName), defaultValues: writer });
+  const form = useForm<z.input<typeof ConfirmName>, unknown, z.output<typeof ConfirmName>>({
+    resolver: zodResolver(ConfirmName),
+    defaultValues: writer,
+  });
   const { errors } = form.formState;
   const errorAt = (name: "legalName" | "creditName" | "ipi" | "society") =>
     errors[name]?.message ?? confirm.fieldError(name);
