@@ -70,10 +70,16 @@ export function AffairsDesk({ page: { delivery, caseOf }, zone, now }: AffairsDe
         }`}
       >
         <Title className="mb-1 block text-big leading-tight sm:text-huge">{delivery.title}</Title>
-        {delivery.words}
+        {isAsked ? (
+          <>
+            A moderator <TextLink href="#question">asks you something</TextLink>. Nothing is decided yet.
+          </>
+        ) : (
+          delivery.words
+        )}
       </HeadSentence>
       <p aria-live="polite" className="sr-only">
-        {delivery.words}
+        {isAsked ? "A moderator asks you something." : delivery.words}
       </p>
       {caseOf?.state === "closed" && <FindingPart caseOf={caseOf} delivery={delivery} zone={zone} />}
       <ul aria-label="Versions" className="mt-5 border-t border-ink">

@@ -1,9 +1,11 @@
 "use client";
 
+import { Caution } from "@/components/ui/caution";
 import { Mark } from "@/components/ui/mark";
 import { Problem } from "@/components/ui/problem";
 import { CertificatePart } from "./certificate-part";
 import { AUDIO_FILES, FileButton } from "./file-button";
+import { mergedPlaces } from "./merged-places";
 import { PassagePlays } from "./passage-plays";
 import { UploadRow } from "./upload-row";
 import type { Uploads } from "./use-uploads";
@@ -95,22 +97,41 @@ export function AffairsVersion(props: AffairsVersionProps) {
   );
 }
 
+const ENGLISH_LIST = (words: readonly string[]) =>
+  new Intl.ListFormat("en-GB", { type: "disjunction" }).format(words);
+
+/** What is not explained yet is one question, however many references it lines up with. */
+function openQuestion(matches: VersionOnWire["matches"]) {
+  const open = matches.filter((match) => match.explainedBy === null);
+  if (open.length === 0) return [];
+  const looks = [...new Set(open.map((match) => match.relation))];
+  return [
+    {
+      words: `Part of it lines up with another recording; it looks like ${ENGLISH_LIST(looks)}. Nothing is decided by that.`,
+      places: mergedPlaces(open.flatMap((match) => match.passages)),
+    },
+  ];
+}
+
 /** Every match with its places in the deliverer's own file, and how it is explained. */
 function Matches({ delivery, version }: { delivery: DeliveryOnWire; version: VersionOnWire }) {
-  const told = version.matches.filter((match) => match.explainedBy !== "family");
+  const explained = version.matches.filter((match) => match.explainedBy && match.explainedBy !== "family");
+  const told = [
+    ...openQuestion(version.matches),
+    ...explained.map((match) => ({
+      words: match.explanation ?? "",
+      places: mergedPlaces(match.passages),
+    })),
+  ];
   if (told.length === 0) return null;
   return (
     <ul className="mt-2 space-y-2">
-      {told.map((match, index) => (
-        // biome-ignore lint/suspicious/noArrayIndexKey: matches have no name of their own on this side
-        <li key={index}>
-          <p className="max-w-measure">
-            {match.explanation ??
-              `Part of it lines up with another recording (${match.relation}). Nothing is decided by that.`}
-          </p>
+      {told.map((match) => (
+        <li key={match.words}>
+          <p className="max-w-measure">{match.words}</p>
           <div className="mt-0.5 text-small">
             <PassagePlays
-              passages={match.passages}
+              passages={match.places}
               playable={delivery.mayHear}
               title={delivery.title}
               version={version}
@@ -118,6 +139,9 @@ function Matches({ delivery, version }: { delivery: DeliveryOnWire; version: Ver
           </div>
         </li>
       ))}
+      <li>
+        <Caution notCompared="Melody, harmony and lyrics were not compared." />
+      </li>
     </ul>
   );
 }

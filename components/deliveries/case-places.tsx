@@ -2,6 +2,7 @@
 
 import { Caution } from "@/components/ui/caution";
 import { fmt } from "@/components/ui/format";
+import { mergedPlaces } from "./merged-places";
 import { PassagePlays } from "./passage-plays";
 import { roleHead } from "./version-words";
 import type { CaseOnWire, DeliveryOnWire } from "./wire";
@@ -29,12 +30,16 @@ export function GroupPlaces({ delivery, group }: { delivery: DeliveryOnWire; gro
   return (
     <div>
       {versions.map((version) => {
-        const passages = group.passages.filter((passage) => passage.recordingId === version.recordingId);
+        const passages = mergedPlaces(
+          group.passages.filter((passage) => passage.recordingId === version.recordingId),
+        );
+        const count = fmt.countWord(passages.length, "place");
         return (
           <div key={version.id}>
             <p>
-              {fmt.countWord(passages.length, "place")} in your {roleHead(version.versionRole).toLowerCase()}{" "}
-              {passages.length === 1 ? "lines" : "line"} up with {group.reference}.
+              {count.charAt(0).toUpperCase() + count.slice(1)} in your{" "}
+              {roleHead(version.versionRole).toLowerCase()} {passages.length === 1 ? "lines" : "line"} up with{" "}
+              {group.reference}.
             </p>
             <PassagePlays
               passages={passages}

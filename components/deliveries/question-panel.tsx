@@ -40,7 +40,7 @@ export function QuestionPanel({ delivery, caseOf, zone, onDone }: QuestionPanelP
     }),
   );
   return (
-    <section className="mb-8">
+    <section className="mb-8 scroll-mt-4" id="question">
       <AsideTitle
         below={
           question.answerUntil

@@ -25,9 +25,14 @@ export function useDelivery(first: DeliveryPage) {
       if (!answer.ok) throw new Error(`the delivery could not be read: ${answer.status}`);
       return withContours((await answer.json()) as DeliveryPage, contours.current);
     },
-    refetchInterval: ({ state }) =>
-      state.data?.delivery.versions.some((version) => BUSY.has(version.state)) ? BUSY_MS : QUIET_MS,
+    refetchInterval: ({ state }) => (state.data && isBusy(state.data) ? BUSY_MS : QUIET_MS),
   });
+}
+
+/** Something goes on by itself: a file is read, or a delivery that has all it needs is being listed. */
+function isBusy({ delivery }: DeliveryPage): boolean {
+  const isListing = delivery.state === "delivered" && delivery.standing === "clear";
+  return isListing || delivery.versions.some((version) => BUSY.has(version.state));
 }
 
 function contoursOf(page: DeliveryPage): Map<string, string> {

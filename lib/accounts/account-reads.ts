@@ -14,6 +14,8 @@ import { type Role, roleLabel } from "./states";
 export interface OwnAccount {
   name: string;
   email: string;
+  /** In which deadlines are written. */
+  timeZone: string;
   hasPassword: boolean;
   /** Came in by a link just now, so the old password is not asked for. */
   mayReplacePassword: boolean;
@@ -35,6 +37,7 @@ export const getAccount = query({
   run: async ({ subject }): Promise<OwnAccount> => ({
     name: subject.name,
     email: subject.email,
+    timeZone: subject.timeZone,
     hasPassword: subject.passwordHash !== null,
     mayReplacePassword: cameByLink(subject),
     secondFactorSince: subject.totpConfirmedAt,

@@ -3,6 +3,7 @@ export { type CaseGroupView, type CaseView, getCase } from "./get-case";
 export { hearPassage } from "./hear-passage";
 export { declareConflict, handOver, openPapers, takeCase } from "./hold-case";
 export { openCase } from "./open-case";
+export { listOpenQuestions } from "./open-questions";
 export { answerQuestion, askComposer } from "./question";
 export { listCases, type QueueRow } from "./queue";
 export { readCasePaper } from "./read-paper";

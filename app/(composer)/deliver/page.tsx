@@ -7,6 +7,7 @@ import { StartForm } from "@/components/deliveries/start-form";
 import { Page } from "@/components/ui/page";
 import { HeadSentence, Section, Sentence } from "@/components/ui/sentence";
 import { StatusSentence } from "@/components/ui/status-sentence";
+import { getAccount } from "@/lib/accounts";
 import { listDeliveries } from "@/lib/deliveries";
 import { viewer } from "@/lib/web";
 
@@ -20,6 +21,7 @@ export default async function DeliverPage() {
   if (actor.kind !== "composer" && actor.kind !== "owner" && actor.kind !== "staff") notFound();
   const current = roles.find((role) => role.current);
   const others = roles.filter((role) => !role.current && DELIVERERS.includes(role.kind));
+  const { timeZone } = await getAccount(actor, {});
   const drafts = (await listDeliveries(actor, {})).filter((row) => row.state === "draft");
   return (
     <Page>
@@ -35,7 +37,7 @@ export default async function DeliverPage() {
       </div>
       {drafts.length > 0 && (
         <Section className="mt-9" head="Drafts to go on with">
-          <DeliveryRows deliveries={drafts} withDeliverer={false} zone="UTC" />
+          <DeliveryRows deliveries={drafts} withDeliverer={false} zone={timeZone} />
         </Section>
       )}
       {others.length > 0 && (

@@ -8,7 +8,9 @@ import { Page } from "@/components/ui/page";
 import { HeadSentence, Section } from "@/components/ui/sentence";
 import { StatusSentence } from "@/components/ui/status-sentence";
 import { Title } from "@/components/ui/title";
+import { getAccount } from "@/lib/accounts";
 import { type DeliverySummary, listDeliveries, listSplitRequests, STANDINGS } from "@/lib/deliveries";
+import { listOpenQuestions } from "@/lib/review";
 import { viewer } from "@/lib/web";
 
 export const metadata: Metadata = { title: "Deliveries" };
@@ -43,7 +45,18 @@ export default async function DeliveriesPage() {
   const { actor, person, roles } = await viewer();
   if (!person) redirect("/sign-in?to=%2Fdeliveries");
   if (actor.kind !== "composer" && actor.kind !== "owner" && actor.kind !== "staff") notFound();
-  const rows = worstFirst(await listDeliveries(actor, {}));
+  const { timeZone } = await getAccount(actor, {});
+  const questions = await listOpenQuestions(actor, {});
+  const rows = worstFirst(
+    (await listDeliveries(actor, {})).map((row): DeliverySummary => {
+      const question = questions.find(({ deliveryId }) => deliveryId === row.id);
+      if (!question) return row;
+      const by = question.answerUntil
+        ? ` Please answer by ${fmt.dateTime(question.answerUntil, timeZone)}.`
+        : "";
+      return { ...row, standing: "needs you", words: `A moderator asks you something.${by}` };
+    }),
+  );
   const asked = await listSplitRequests(actor, {});
   return (
     <Page>
@@ -56,7 +69,9 @@ export default async function DeliveriesPage() {
             {asked.map((request) => (
               <StatusSentence
                 as="li"
-                below={request.answerUntil ? `until ${fmt.dateTime(request.answerUntil, "UTC")}` : undefined}
+                below={
+                  request.answerUntil ? `until ${fmt.dateTime(request.answerUntil, timeZone)}` : undefined
+                }
                 className="border-b border-line py-3"
                 key={request.deliveryId}
                 mark="warn"
@@ -78,7 +93,7 @@ export default async function DeliveriesPage() {
       </div>
       <Section className="mt-8" head="Deliveries" note={fmt.count(rows.length, "delivery", "deliveries")}>
         {rows.length > 0 ? (
-          <DeliveryRows deliveries={rows} withDeliverer={actor.kind !== "composer"} zone="UTC" />
+          <DeliveryRows deliveries={rows} withDeliverer={actor.kind !== "composer"} zone={timeZone} />
         ) : (
           <Empty action={<TextLink href="/deliver">Deliver a family</TextLink>}>
             Each family that is handed in stands here with how it fares.

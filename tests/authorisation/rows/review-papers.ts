@@ -39,4 +39,8 @@ export const rows = {
     },
     may: ["moderator"],
   },
+  "review.listOpenQuestions": {
+    input: async () => ({}),
+    may: ["composer", "otherComposer", "owner", "otherOwner", "staff"],
+  },
 } satisfies Rows;

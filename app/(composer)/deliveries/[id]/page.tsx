@@ -1,6 +1,8 @@
 import type { Metadata } from "next";
 import { notFound, redirect } from "next/navigation";
 import { DeliveryDesk } from "@/components/deliveries/delivery-desk";
+import { getAccount } from "@/lib/accounts";
+import { isSignedIn } from "@/lib/kernel/actor";
 import { businessNow } from "@/lib/kernel/clock";
 import { Expected } from "@/lib/kernel/errors";
 import { viewer } from "@/lib/web";
@@ -11,10 +13,11 @@ export const metadata: Metadata = { title: "Delivery" };
 export default async function DeliveryPage({ params }: { params: Promise<{ id: string }> }) {
   const { id } = await params;
   const { actor, person } = await viewer();
-  if (!person) redirect(`/sign-in?to=${encodeURIComponent(`/deliveries/${id}`)}`);
+  if (!person || !isSignedIn(actor)) redirect(`/sign-in?to=${encodeURIComponent(`/deliveries/${id}`)}`);
   const first = await readDelivery(actor, id).catch((error: unknown) => {
     if (error instanceof Expected && error.code === "not_found") return notFound();
     throw error;
   });
-  return <DeliveryDesk first={first} now={businessNow().getTime()} zone="UTC" />;
+  const { timeZone } = await getAccount(actor, {});
+  return <DeliveryDesk first={first} now={businessNow().getTime()} zone={timeZone} />;
 }
