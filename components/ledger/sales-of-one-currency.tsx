@@ -40,7 +40,7 @@ function ChosenWords({ chosen, lines }: { chosen: Chosen; lines: readonly SaleLi
   return <>Only what is {chosen.value}.</>;
 }
 
-function stepsOf(sales: SalesOfCurrency) {
+function stepsOf(sales: SalesOfCurrency, link: (query: string) => string) {
   const money = (minor: bigint) => formatMoney({ minor, currency: sales.currency });
   const held = sales.lines.filter(({ state }) => state === "held");
   const ends = held
@@ -56,7 +56,7 @@ function stepsOf(sales: SalesOfCurrency) {
       sentence: (
         <>
           <b>
-            <TextLink href="?state=held#sales">{money(sales.heldMinor)}</TextLink>
+            <TextLink href={link("state=held")}>{money(sales.heldMinor)}</TextLink>
           </b>{" "}
           is held.
         </>
@@ -71,7 +71,7 @@ function stepsOf(sales: SalesOfCurrency) {
       sentence: (
         <>
           <b>
-            <TextLink href="?state=available#sales">{money(sales.availableMinor)}</TextLink>
+            <TextLink href={link("state=available")}>{money(sales.availableMinor)}</TextLink>
           </b>{" "}
           is available.
         </>
@@ -97,7 +97,7 @@ function stepsOf(sales: SalesOfCurrency) {
       below:
         sales.disputedMinor > 0n ? (
           <>
-            <TextLink href="?state=disputed#sales">{money(sales.disputedMinor)}</TextLink> is disputed by
+            <TextLink href={link("state=disputed")}>{money(sales.disputedMinor)}</TextLink> is disputed by
             buyers' banks.
           </>
         ) : (
@@ -112,15 +112,17 @@ function Groups({
   groups,
   by,
   currency,
+  link,
 }: {
   caption: string;
   groups: readonly SalesGroup[];
   by: Chosen["by"];
   currency: string;
+  link: (query: string) => string;
 }) {
   const money = (minor: bigint) => formatMoney({ minor, currency });
   const name = (group: SalesGroup) => (
-    <TextLink href={`?${by}=${encodeURIComponent(group.key)}#sales`}>
+    <TextLink href={link(`${by}=${encodeURIComponent(group.key)}`)}>
       {by === "cue" ? <Title>{group.name}</Title> : group.name}
     </TextLink>
   );
@@ -150,13 +152,14 @@ export function SalesOfOneCurrency({ sales, chosen }: { sales: SalesOfCurrency; 
   const money = (minor: bigint) => formatMoney({ minor, currency: sales.currency });
   const lines = chosen ? sales.lines.filter((line) => isChosen(line, chosen)) : sales.lines;
   const { totals } = sales;
+  const link = (query: string) => `/sales?${[day && `at=${day}`, query].filter(Boolean).join("&")}#sales`;
   return (
     <>
-      <StandingSteps steps={stepsOf(sales)} />
+      <StandingSteps steps={stepsOf(sales, link)} />
       <Section className="mt-8" head="Sales" id="sales" note={sales.currency}>
         {chosen && (
           <Sentence className="mb-3">
-            <ChosenWords chosen={chosen} lines={lines} /> <TextLink href="/sales">Show all</TextLink>
+            <ChosenWords chosen={chosen} lines={lines} /> <TextLink href={link("")}>Show all</TextLink>
           </Sentence>
         )}
         <SaleLines lines={lines} />
@@ -184,13 +187,14 @@ export function SalesOfOneCurrency({ sales, chosen }: { sales: SalesOfCurrency; 
         <ul className="mt-2 flex flex-wrap gap-x-5">
           {sales.months.map(({ key, name }) => (
             <li key={key}>
-              <TextLink href={`?month=${key}#sales`}>{name}</TextLink>
+              <TextLink href={link(`month=${key}`)}>{name}</TextLink>
             </li>
           ))}
         </ul>
       </Section>
       <Section className="mt-8" head="By cue and by production">
         <Groups
+          link={link}
           by="cue"
           caption="Cues, the largest net sale first"
           currency={sales.currency}
@@ -198,6 +202,7 @@ export function SalesOfOneCurrency({ sales, chosen }: { sales: SalesOfCurrency; 
         />
         <div className="mt-6">
           <Groups
+            link={link}
             by="production"
             caption="Productions, the largest net sale first"
             currency={sales.currency}

@@ -11,7 +11,7 @@ import { HeadSentence } from "@/components/ui/sentence";
 import { isSignedIn } from "@/lib/kernel/actor";
 import { getPayouts, getSales } from "@/lib/ledger";
 import { viewer } from "@/lib/web";
-import { instantOf, type SearchParams } from "../read-params";
+import { instantOf, type SearchParams, wordOf } from "../read-params";
 
 export const metadata: Metadata = { title: "Sales" };
 
@@ -46,7 +46,12 @@ export default async function SalesPage({ searchParams }: { searchParams: Search
     >
       <SalesHead isPast={at !== null} place={place} sales={sales} />
       {sales.currencies.map((one) => (
-        <SalesOfOneCurrency chosen={chosenOf(given)} key={one.currency} sales={one} />
+        <SalesOfOneCurrency
+          day={at && wordOf(given.at)}
+          chosen={chosenOf(given)}
+          key={one.currency}
+          sales={one}
+        />
       ))}
     </Page>
   );
