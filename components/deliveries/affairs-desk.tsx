@@ -11,7 +11,7 @@ import { Title } from "@/components/ui/title";
 import { AffairsVersion } from "./affairs-version";
 import { EditorialPanel, HandInPanel } from "./editorial-panel";
 import { deliveryScaleS } from "./files-step";
-import { codeWords, FindingPart } from "./finding-part";
+import { AskedAndAnswered, codeWords, FindingPart } from "./finding-part";
 import { QuestionPanel } from "./question-panel";
 import { useReadAgain } from "./use-delivery";
 import { useUploads } from "./use-uploads";
@@ -97,6 +97,7 @@ export function AffairsDesk({ page: { delivery, caseOf }, zone, now }: AffairsDe
         ))}
         <ThenWhat delivery={delivery} />
       </ul>
+      {caseOf && !isAsked && <AskedAndAnswered caseOf={caseOf} zone={zone} />}
       <Receipt delivery={delivery} zone={zone} />
       <WhatHappened delivery={delivery} zone={zone} />
     </Page>

@@ -12,7 +12,7 @@ import type { Uploads } from "./use-uploads";
 import { VersionChecks } from "./version-checks";
 import { VersionContour } from "./version-contour";
 import { VersionProgress } from "./version-progress";
-import { factsLine, markOfState, roleHead } from "./version-words";
+import { factsLine, markOfState, RELATION_WORDS, roleHead } from "./version-words";
 import { checksOf, type DeliveryOnWire, type VersionOnWire } from "./wire";
 
 interface AffairsVersionProps {
@@ -101,10 +101,11 @@ const ENGLISH_LIST = (words: readonly string[]) =>
   new Intl.ListFormat("en-GB", { type: "disjunction" }).format(words);
 
 /** What is not explained yet is one question, however many references it lines up with. */
-function openQuestion(matches: VersionOnWire["matches"]) {
-  const open = matches.filter((match) => match.explainedBy === null);
+function openQuestion({ matches, state }: VersionOnWire) {
+  const isHeld = state === "held" || state === "returned";
+  const open = isHeld ? matches.filter((match) => match.explainedBy === null) : [];
   if (open.length === 0) return [];
-  const looks = [...new Set(open.map((match) => match.relation))];
+  const looks = [...new Set(open.map((match) => RELATION_WORDS[match.relation] ?? match.relation))];
   return [
     {
       words: `Part of it lines up with another recording; it looks like ${ENGLISH_LIST(looks)}. Nothing is decided by that.`,
@@ -117,7 +118,7 @@ function openQuestion(matches: VersionOnWire["matches"]) {
 function Matches({ delivery, version }: { delivery: DeliveryOnWire; version: VersionOnWire }) {
   const explained = version.matches.filter((match) => match.explainedBy && match.explainedBy !== "family");
   const told = [
-    ...openQuestion(version.matches),
+    ...openQuestion(version),
     ...explained.map((match) => ({
       words: match.explanation ?? "",
       places: mergedPlaces(match.passages),

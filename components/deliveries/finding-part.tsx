@@ -8,6 +8,7 @@ import { StatusSentence } from "@/components/ui/status-sentence";
 import { EDITORIAL_CODES } from "@/lib/deliveries/states";
 import { FINDING_OUTCOMES, type FindingOutcome, RIGHTS_CODES } from "@/lib/review/states";
 import { CasePlaces } from "./case-places";
+import { RELATION_WORDS } from "./version-words";
 import type { CaseOnWire, DeliveryOnWire } from "./wire";
 
 const WORDS: Record<string, { mark: MarkKind; sentence: string }> = {
@@ -28,6 +29,27 @@ interface FindingPartProps {
   delivery: DeliveryOnWire;
   caseOf: CaseOnWire;
   zone: string;
+}
+
+/** What was asked and answered in a case, in its order. */
+export function AskedAndAnswered({ caseOf, zone }: { caseOf: CaseOnWire; zone: string }) {
+  if (caseOf.messages.length === 0) return null;
+  return (
+    <Section className="mt-7" head="Asked and answered" note={`case ${caseOf.number}`}>
+      <ol>
+        {caseOf.messages.map((message) => (
+          <li className="border-b border-line py-2.5" key={`${message.kind}:${message.at}`}>
+            <p className="max-w-measure whitespace-pre-line">{message.words}</p>
+            <p className="text-small text-ink-soft">
+              {message.kind === "question" ? "asked by a moderator" : "answered"},{" "}
+              {fmt.dateTime(message.at, zone)}
+              {message.hasFile && ", with a file"}
+            </p>
+          </li>
+        ))}
+      </ol>
+    </Section>
+  );
 }
 
 /** What was found, by whom as a role, for which reasons, and how to contest it. */
@@ -55,7 +77,10 @@ export function FindingPart({ delivery, caseOf, zone }: FindingPartProps) {
             <FactList
               nameWidth="10rem"
               rows={[
-                { name: "About", value: `${group.relation} with ${group.reference}` },
+                {
+                  name: "About",
+                  value: `It looks like ${RELATION_WORDS[group.relation] ?? group.relation}; the other side is ${group.reference}.`,
+                },
                 ...(finding.explainedBy ? [{ name: "Explained by", value: finding.explainedBy }] : []),
                 ...(finding.codes.length > 0
                   ? [{ name: "Codes", value: fmt.list(finding.codes.map(codeWords)) }]

@@ -76,6 +76,16 @@ export function progressWords(version: VersionOnWire): string {
     : `being screened. Searching ${fmt.count(progress.of, "recording")}.`;
 }
 
+/** What a match looks like, inside a sentence. */
+export const RELATION_WORDS: Record<string, string> = {
+  "same recording": "the same recording",
+  "altered copy": "an altered copy",
+  excerpt: "an excerpt",
+  "shared material": "shared material",
+  "own version": "a version of your own",
+  "same tune": "the same tune",
+};
+
 export const ENDING_KINDS: Record<string, "button" | "ring-out" | "fade" | "loop"> = {
   button: "button",
   "ring-out": "ring-out",
