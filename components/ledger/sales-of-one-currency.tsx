@@ -147,8 +147,15 @@ function Groups({
   );
 }
 
+interface SalesOfOneCurrencyProps {
+  sales: SalesOfCurrency;
+  chosen: Chosen | null;
+  /** The past day that is looked at, which its links keep. */
+  day: string | null;
+}
+
 /** A library's money in one currency: where it stands, every sale with its parts, and the same by month, cue and production. */
-export function SalesOfOneCurrency({ sales, chosen }: { sales: SalesOfCurrency; chosen: Chosen | null }) {
+export function SalesOfOneCurrency({ sales, chosen, day }: SalesOfOneCurrencyProps) {
   const money = (minor: bigint) => formatMoney({ minor, currency: sales.currency });
   const lines = chosen ? sales.lines.filter((line) => isChosen(line, chosen)) : sales.lines;
   const { totals } = sales;
