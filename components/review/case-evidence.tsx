@@ -186,7 +186,8 @@ function residualWords(render: { method?: string; residualDb?: number }): string
 
 function listeningWords(state: string, reversed: boolean): string {
   if (reversed) return "It lines up played backwards; aligned listening is not offered for that.";
-  if (state === "not possible")
+  if (state === "confidential") return "It is a confidential holding: nothing of it is heard here.";
+  if (state === "impossible")
     return "The two could not be rendered side by side; the passages below say where they line up.";
   return "The listening file of this passage is being rendered; it comes by itself in a moment when you reload.";
 }

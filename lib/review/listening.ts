@@ -52,7 +52,7 @@ export const recordListening = command({
   }),
   authorise: open("only the worker renders"),
   run: async ({ tx, input, now }) => {
-    const values = { ...input, state: input.fileKey ? "ready" : "not possible", createdAt: now };
+    const values = { ...input, state: input.fileKey ? "ready" : "impossible", createdAt: now };
     await tx.insert(alignedListenings).values(values).onDuplicateKeyUpdate({ set: values });
     return null;
   },
