@@ -56,3 +56,4 @@ export {
   WITHHOLDABLE,
   type Withholdable,
 } from "./states";
+export { TERMS_VERSION } from "./terms";

@@ -17,12 +17,13 @@ export const look = StyleSheet.create({
     paddingHorizontal: 52,
   },
   // Not on the page itself: text that is drawn late, such as the page's number, vanishes under a line height.
-  body: { lineHeight: 1.45 },
+  body: { fontSize: 9, lineHeight: 1.45 },
   head: { fontSize: 17, lineHeight: 1.3, marginTop: 6 },
   section: { marginTop: 16 },
   sectionHead: {
     fontWeight: 600,
     fontSize: 10,
+    lineHeight: 1.45,
     borderBottomWidth: 0.9,
     borderBottomColor: INK,
     paddingBottom: 2,
@@ -31,7 +32,7 @@ export const look = StyleSheet.create({
   row: { flexDirection: "row", borderBottomWidth: 0.5, borderBottomColor: LINE, paddingVertical: 3.2 },
   name: { width: 106, color: SOFT, paddingRight: 8 },
   value: { flex: 1 },
-  soft: { color: SOFT, fontSize: 8 },
+  soft: { color: SOFT, fontSize: 8, lineHeight: 1.45 },
   work: { fontFamily: WORK, fontStyle: "italic", fontWeight: 500 },
   foot: {
     position: "absolute",

@@ -4,11 +4,11 @@ import { AskAboutDay, CheckVerdict } from "@/components/licensing/check-verdict"
 import { CheckedLicencePart } from "@/components/licensing/checked-licence";
 import { DropRecord } from "@/components/licensing/drop-record";
 import { LicenceContour } from "@/components/licensing/licence-contour";
+import { NoLicence } from "@/components/licensing/no-licence";
 import { stretchesOf, TermStrip } from "@/components/licensing/term-strip";
 import { VerifierPart } from "@/components/licensing/verifier-part";
 import { Page } from "@/components/ui/page";
-import { Problem } from "@/components/ui/problem";
-import { HeadSentence, Section } from "@/components/ui/sentence";
+import { Section } from "@/components/ui/sentence";
 import { isCivilDate } from "@/lib/kernel/calendar";
 import { Limit } from "@/lib/kernel/errors";
 import { type CheckAnswer, type Checked, verifyByProof } from "@/lib/licensing";
@@ -92,34 +92,5 @@ function TimePart({ checked }: { checked: Checked }) {
         </div>
       )}
     </div>
-  );
-}
-
-type WithoutLicence = Exclude<CheckAnswer, Checked> | { limit: string };
-
-function headOf(answer: WithoutLicence): string {
-  if ("limit" in answer) return "That was a lot of checks at once.";
-  return answer.verdict === "mistyped" ? "This code is mistyped." : "This code is unknown.";
-}
-
-function NoLicence({ answer, proof }: { answer: WithoutLicence; proof: string }) {
-  const words = "limit" in answer ? answer.limit : answer.sentence;
-  return (
-    <Page aside={<VerifierPart />} asideLabel="Check it without us">
-      <HeadSentence place="Check a licence" size="huge">
-        {headOf(answer)}
-      </HeadSentence>
-      <Problem className="mt-5" live>
-        {words}
-      </Problem>
-      <div className="mt-7 grid gap-8 @wide:grid-cols-2">
-        <Section head="Try the code again">
-          <CheckForm typed={proof} />
-        </Section>
-        <Section head="Or by the file itself">
-          <DropRecord />
-        </Section>
-      </div>
-    </Page>
   );
 }
