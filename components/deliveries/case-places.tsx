@@ -2,6 +2,7 @@
 
 import { Caution } from "@/components/ui/caution";
 import { fmt } from "@/components/ui/format";
+import { HearBoth } from "./hear-both";
 import { mergedPlaces } from "./merged-places";
 import { PassagePlays } from "./passage-plays";
 import { roleHead } from "./version-words";
@@ -50,6 +51,7 @@ export function GroupPlaces({ delivery, group }: { delivery: DeliveryOnWire; gro
           </div>
         );
       })}
+      <HearBoth passages={group.passages} />
     </div>
   );
 }

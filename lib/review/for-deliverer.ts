@@ -92,9 +92,9 @@ async function groupForDeliverer(
   const listenings =
     isListed && passageIds.length
       ? await reader
-          .select({ passageId: alignedListenings.passageId, state: alignedListenings.state })
+          .select({ passageId: alignedListenings.passageId, render: alignedListenings.render })
           .from(alignedListenings)
-          .where(inArray(alignedListenings.passageId, passageIds))
+          .where(and(inArray(alignedListenings.passageId, passageIds), eq(alignedListenings.state, "ready")))
       : [];
   return {
     relation: group.relation,
@@ -102,18 +102,26 @@ async function groupForDeliverer(
     passages: hits.flatMap((hit) =>
       hit.passages.map((passage) => ({
         id: passage.id,
+        number: passage.number,
+        mayHear: listenings.some((listening) => listening.passageId === passage.id),
         /** The deliverer's own recording, in which the times lie. */
         recordingId: hit.recordingId,
         startS: passage.startS,
         endS: passage.endS,
         speed: passage.speed,
         pitchSemitones: passage.pitchSemitones,
-        mayHear: listenings.some(
-          (listening) => listening.passageId === passage.id && listening.state === "ready",
-        ),
+        /** Of a listed reference only: where the other side's seconds lie, and how the two were brought into step. */
+        heard: heardSide(passage, listenings.find((listening) => listening.passageId === passage.id)?.render),
       })),
     ),
   };
+}
+
+function heardSide(
+  passage: { refStartS: number; refEndS: number },
+  render: Record<string, unknown> | null | undefined,
+) {
+  return render ? { refStartS: passage.refStartS, refEndS: passage.refEndS, render } : null;
 }
 
 function findingForDeliverer(
