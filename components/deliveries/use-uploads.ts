@@ -25,6 +25,27 @@ export interface Uploads {
   drop: (id: number) => void;
 }
 
+type SetRunning = (change: (rows: readonly RunningUpload[]) => readonly RunningUpload[]) => void;
+
+/** When the line is back, what broke off goes on by itself. */
+function useBackOnline(setRunning: SetRunning): void {
+  useEffect(() => {
+    const back = () =>
+      setRunning((rows) => rows.map((row) => (row.state === "failed" ? { ...row, state: "waiting" } : row)));
+    window.addEventListener("online", back);
+    return () => window.removeEventListener("online", back);
+  }, [setRunning]);
+}
+
+function useAskBeforeLeaving(isBusy: boolean): void {
+  useEffect(() => {
+    if (!isBusy) return;
+    const ask = (event: BeforeUnloadEvent) => event.preventDefault();
+    window.addEventListener("beforeunload", ask);
+    return () => window.removeEventListener("beforeunload", ask);
+  }, [isBusy]);
+}
+
 /** Files on their way into a delivery: three at a time, each with its own pause; a broken one is kept and tried again. */
 export function useUploads(deliveryId: string, onArrived: () => void): Uploads {
   const [running, setRunning] = useState<readonly RunningUpload[]>([]);
@@ -75,19 +96,8 @@ export function useUploads(deliveryId: string, onArrived: () => void): Uploads {
     }
   });
 
-  useEffect(() => {
-    const back = () =>
-      setRunning((rows) => rows.map((row) => (row.state === "failed" ? { ...row, state: "waiting" } : row)));
-    window.addEventListener("online", back);
-    return () => window.removeEventListener("online", back);
-  }, []);
-
-  useEffect(() => {
-    if (running.length === 0) return;
-    const ask = (event: BeforeUnloadEvent) => event.preventDefault();
-    window.addEventListener("beforeunload", ask);
-    return () => window.removeEventListener("beforeunload", ask);
-  }, [running.length]);
+  useBackOnline(setRunning);
+  useAskBeforeLeaving(running.length > 0);
 
   return {
     running,

@@ -3,7 +3,7 @@ import { and, asc, eq, isNull } from "drizzle-orm";
 import { z } from "zod";
 import type { Tx } from "@/db/client";
 import { declarations, deliveries, deliveryVersions, deliveryWriters } from "@/db/schema/deliveries";
-import { peopleByIds, writerOnRoster } from "@/lib/accounts";
+import { peopleByIds } from "@/lib/accounts";
 import {
   familyById,
   insertRecording,
@@ -27,6 +27,7 @@ import {
   requireDraft,
   writeDeliveryEvent,
 } from "./own-delivery";
+import { type ResolvedWriter, resolveWriters } from "./resolve-writers";
 import { Declaration, DeliveryForm } from "./schemas";
 import { ANSWER_DAYS, DECLARATION_TEXT_VERSION } from "./states";
 
@@ -189,46 +190,6 @@ async function readyVersions(tx: Tx, deliveryId: string, isLinked: boolean): Pro
   return [...rows].sort(
     (a, b) => Number(b.versionRole === "full") - Number(a.versionRole === "full") || a.position - b.position,
   );
-}
-
-type ResolvedWriter = DeliveryForm["writers"][number] & {
-  personId: string | null;
-  contact: string | null;
-  state: "asked" | "accepted";
-  acceptedAt: Date | null;
-};
-
-/** A writer is found on the roster by IPI or address; one who is not known there is shown as unconfirmed. */
-async function resolveWriters(
-  tx: Tx,
-  delivery: DeliveryRow,
-  form: DeliveryForm,
-  now: Date,
-): Promise<ResolvedWriter[]> {
-  const writers: ResolvedWriter[] = [];
-  for (const writer of form.writers) {
-    const known = await knownWriter(tx, delivery.libraryId, writer);
-    const isDeliverer = known?.personId === delivery.delivererId;
-    writers.push({
-      ...writer,
-      personId: known?.personId ?? null,
-      contact: writer.email,
-      state: isDeliverer ? "accepted" : "asked",
-      acceptedAt: isDeliverer ? now : null,
-    });
-  }
-  return writers;
-}
-
-async function knownWriter(tx: Tx, libraryId: string, writer: DeliveryForm["writers"][number]) {
-  const byIpi = writer.ipi ? await writerOnRoster(tx, { libraryId, ipi: writer.ipi }) : null;
-  const known = byIpi ?? (writer.email ? await writerOnRoster(tx, { libraryId, email: writer.email }) : null);
-  if (writer.ipi && known?.confirmed?.ipi && known.confirmed.ipi !== writer.ipi)
-    throw new Invalid(
-      `${writer.name}: this address belongs to a writer whose confirmed IPI is another one (M02). Correct the IPI or the address.`,
-      { writers: "IPI and address belong to two people" },
-    );
-  return known;
 }
 
 function sharesOf(form: DeliveryForm, writers: readonly ResolvedWriter[]): Share[] {
