@@ -25,6 +25,15 @@ export interface Uploads {
   drop: (id: number) => void;
 }
 
+const waitingRow = (id: number, file: File, replaces: string | null): RunningUpload => ({
+  id,
+  file,
+  replaces,
+  state: "waiting",
+  progress: null,
+  problem: null,
+});
+
 type SetRunning = (change: (rows: readonly RunningUpload[]) => readonly RunningUpload[]) => void;
 
 /** When the line is back, what broke off goes on by itself. */
@@ -103,19 +112,7 @@ export function useUploads(deliveryId: string, onArrived: () => void): Uploads {
     running,
     arrived,
     add: (files, replaces = null) =>
-      setRunning((rows) => [
-        ...rows,
-        ...files.map(
-          (file): RunningUpload => ({
-            id: nextId.current++,
-            file,
-            replaces,
-            state: "waiting",
-            progress: null,
-            problem: null,
-          }),
-        ),
-      ]),
+      setRunning((rows) => [...rows, ...files.map((file) => waitingRow(nextId.current++, file, replaces))]),
     pause: (id) => {
       tasks.current.get(id)?.pause();
       change(id, { state: "paused" });
