@@ -22,3 +22,4 @@ export {
   type UploadRouter,
 } from "./upload-router";
 export { openUploads, type UploadsClient, type UploadsConfig } from "./uploadthing";
+export { webBody } from "./web-body";

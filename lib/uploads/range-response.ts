@@ -1,6 +1,6 @@
-import { Readable } from "node:stream";
 import { UploadError } from "./errors";
 import { type ByteRange, readStored } from "./stored-files";
+import { webBody } from "./web-body";
 
 /** One range as browsers ask for it (RFC 9110, 14.1.2); anything else is answered with the whole file. */
 const RANGE = /^bytes=(\d*)-(\d*)$/;
@@ -41,7 +41,7 @@ export async function streamStored(
         "content-range",
         `bytes ${range.startBytes}-${range.startBytes + stored.lengthBytes - 1}/${stored.totalBytes}`,
       );
-    return new Response(Readable.toWeb(stored.body) as ReadableStream<Uint8Array>, {
+    return new Response(webBody(stored.body), {
       status: range ? 206 : 200,
       headers,
     });

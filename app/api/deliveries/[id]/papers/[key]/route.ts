@@ -1,7 +1,6 @@
-import { Readable } from "node:stream";
 import { z } from "zod";
 import { readPaper } from "@/lib/deliveries";
-import { readStored } from "@/lib/uploads";
+import { readStored, webBody } from "@/lib/uploads";
 import { route } from "@/lib/web";
 
 /** Papers come from strangers' machines: they are handed on as files, never shown as pages of this site. */
@@ -10,7 +9,7 @@ export const GET = route({
   handle: async ({ actor, params }) => {
     const paper = await readPaper(actor, { deliveryId: params.id, key: params.key });
     const stored = await readStored(paper.key);
-    return new Response(Readable.toWeb(stored.body) as ReadableStream, {
+    return new Response(webBody(stored.body), {
       headers: {
         "content-type": "application/octet-stream",
         "content-length": String(stored.lengthBytes),
