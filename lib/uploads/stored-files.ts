@@ -43,6 +43,11 @@ function refusalOf(status: number, key: string): UploadError {
   );
 }
 
+/** Not awaited: where the framework keeps a second copy of an answer, cancelling one of them never settles. */
+function leave(answer: Response): void {
+  answer.body?.cancel().catch(() => undefined);
+}
+
 /** The bytes of one stored file, streamed; the caller must consume or destroy `body`. Throws UploadError. */
 export async function readStored(
   key: string,
@@ -57,11 +62,11 @@ export async function readStored(
     throw new UploadError("unreachable", `reading ${key}: no answer`, { cause: error });
   });
   if (!answer.ok || !answer.body) {
-    await answer.body?.cancel();
+    leave(answer);
     throw refusalOf(answer.status, key);
   }
   if (range && answer.status !== 206 && range.startBytes > 0) {
-    await answer.body.cancel();
+    leave(answer);
     throw new UploadError("refused", `the store ignored the range of ${key}`);
   }
   const lengthBytes = Number(answer.headers.get("content-length"));

@@ -1,8 +1,8 @@
 import type { Readable } from "node:stream";
 
 /**
- * A stored file's bytes as the body of a Response. Readable.toWeb closes twice when a listener goes away in the middle
- * (nodejs/node: "Controller is already closed"), which ends the process; this one simply stops reading.
+ * A stored file's bytes as the body of a Response. Readable.toWeb closes its controller twice when a listener goes away
+ * in the middle, and nothing catches that; this one simply stops reading.
  */
 export function webBody(stored: Readable): ReadableStream<Uint8Array> {
   const parts = stored[Symbol.asyncIterator]() as AsyncIterator<Uint8Array>;
