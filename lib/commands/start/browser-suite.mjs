@@ -79,8 +79,8 @@ async function startSiteForTests({ values, ports, runDir, cleanups }) {
 }
 
 /** Journeys and accessibility in Chromium, on a site of their own with the demo world in. */
-// The first look of the demonstration, at forty seconds a cue: what the journeys use.
-const DEMO_FOR_TESTS = { DEMO_CUES: "14", DEMO_CUE_SECONDS: "40" };
+// The first look of the demonstration, at sixty seconds a cue: what the journeys use.
+const DEMO_FOR_TESTS = { DEMO_CUES: "14", DEMO_CUE_SECONDS: "60" };
 
 export async function runBrowserSuite({ values: given, ports, runDir, cleanups }) {
   const values = { ...given, ...DEMO_FOR_TESTS };
