@@ -36,7 +36,7 @@ interface ChoiceMenuProps {
 const ITEM =
   "grid min-h-9 w-full cursor-pointer grid-cols-[1.5rem_minmax(0,1fr)] items-center break-inside-avoid px-3 text-left outline-none data-highlighted:bg-shoal-1";
 
-/** Underlined words that open the list of what may stand in their place. */
+/** Underlined words that open the list of what may stand in their place. No button element: that would not wrap as words do. */
 export function ChoiceMenu(props: ChoiceMenuProps) {
   const { name, words, isOpen, groups, chosen, several, hint, onChange, quiet, required } = props;
   const [place, setPlace] = useState<HTMLSpanElement | null>(null);
@@ -44,15 +44,9 @@ export function ChoiceMenu(props: ChoiceMenuProps) {
   return (
     <Menu.Root modal={false}>
       <Menu.Trigger
-        render={
-          <button
-            aria-label={`${name}: ${words}`}
-            className={cx("inline min-h-6 text-left", choiceLook(isOpen, quiet))}
-            type="button"
-          >
-            {words}
-          </button>
-        }
+        aria-label={`${name}: ${words}`}
+        nativeButton={false}
+        render={<span className={choiceLook(isOpen, quiet)}>{words}</span>}
       />
       <span className="contents [&>div]:contents" ref={setPlace} />
       <Menu.Portal container={place}>
@@ -112,7 +106,7 @@ export function ChoiceMenu(props: ChoiceMenuProps) {
 
 /** Words that are chosen stand out; words left open are underlined only. */
 export function choiceLook(isOpen: boolean, quiet: boolean | undefined): string {
-  if (quiet) return "link";
+  if (quiet) return "link target";
   return isOpen ? "link decoration-ink-soft" : "choice";
 }
 

@@ -31,15 +31,9 @@ export function RangePopover(props: RangePopoverProps) {
   return (
     <Popover.Root onOpenChange={setShown} open={shown}>
       <Popover.Trigger
-        render={
-          <button
-            aria-label={`${name}: ${words}`}
-            className={cx("inline min-h-6 text-left", choiceLook(isOpen, quiet))}
-            type="button"
-          >
-            {words}
-          </button>
-        }
+        aria-label={`${name}: ${words}`}
+        nativeButton={false}
+        render={<span className={choiceLook(isOpen, quiet)}>{words}</span>}
       />
       <span className="contents [&>div]:contents" ref={setPlace} />
       <Popover.Portal container={place}>

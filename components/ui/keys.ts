@@ -22,7 +22,8 @@ const OFF_KEY = "sedgewren.keys-off";
 
 const TYPING =
   "input:not([type=checkbox],[type=radio],[type=button],[type=submit],[type=range]),textarea,select,[contenteditable]";
-const OWN_KEYS = "a,button,summary,input,[role=slider],[role=menuitem],[role=option],[role=tab],[role=radio]";
+const OWN_KEYS =
+  "a,button,summary,input,[role=button],[role=slider],[role=menuitem],[role=option],[role=tab],[role=radio]";
 
 /** True where the focused element uses the key itself, so that a screen key must stand back. */
 export function keyBelongsToTarget(key: string, target: EventTarget | null): boolean {
