@@ -37,7 +37,7 @@ const DECISIONS = [
   {
     value: "reject",
     sentence: "Reject",
-    below: "Nothing is removed. The reporter gets your reasons, and may complain within six months.",
+    below: "Nothing is removed. The reporter gets your reasons, and has six months to complain.",
   },
   {
     value: "accept",

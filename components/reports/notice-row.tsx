@@ -15,9 +15,9 @@ function stateWords(notice: Notice, isLate: boolean): string {
     case "incomplete":
       return "It waits for its reporter.";
     case "under review":
-      return `It is being read; the first reading ${isLate ? "was" : "is"} due ${fmt.dateTime(notice.dueAt)}.`;
+      return `It is being read; the first reading ${isLate ? "was" : "is"} due ${fmt.dateTime(notice.dueAt, "Europe/London")}.`;
     default:
-      return `Nobody has read it yet; the first reading ${isLate ? "was" : "is"} due ${fmt.dateTime(notice.dueAt)}.`;
+      return `Nobody has read it yet; the first reading ${isLate ? "was" : "is"} due ${fmt.dateTime(notice.dueAt, "Europe/London")}.`;
   }
 }
 

@@ -30,6 +30,7 @@ export function PlaceStep({ form, errorAt }: StepProps) {
                     label="From"
                     onBlur={field.onBlur}
                     onChange={field.onChange}
+                    placeholder="0:20"
                     value={field.value}
                   />
                 )}
@@ -43,6 +44,7 @@ export function PlaceStep({ form, errorAt }: StepProps) {
                     label="To"
                     onBlur={field.onBlur}
                     onChange={field.onChange}
+                    placeholder="1:05"
                     value={field.value}
                   />
                 )}

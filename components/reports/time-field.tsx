@@ -10,10 +10,11 @@ interface TimeFieldProps {
   onChange: (seconds: number | null) => void;
   onBlur: () => void;
   error?: string | undefined;
+  placeholder: string;
 }
 
 /** A place in a recording as minutes and seconds. */
-export function TimeField({ label, value, onChange, onBlur, error }: TimeFieldProps) {
+export function TimeField({ label, value, onChange, onBlur, error, placeholder }: TimeFieldProps) {
   const [typed, setTyped] = useState("");
   const isTheirs = Object.is(secondsOf(typed), value ?? null);
   return (
@@ -28,7 +29,7 @@ export function TimeField({ label, value, onChange, onBlur, error }: TimeFieldPr
         onChange(secondsOf(event.target.value));
       }}
       optional
-      placeholder="0:20"
+      placeholder={placeholder}
       value={isTheirs || value === null || value === undefined ? typed : clockOf(value)}
     />
   );

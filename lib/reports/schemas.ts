@@ -32,15 +32,15 @@ export function receiptNumberOf(typed: string): string | null {
 
 /** What a report holds: who, what work, where, why, good faith, accuracy and authority. */
 export const SubmitNotice = z.object({
-  name: text(2, 200, "Your name."),
+  name: text(2, 200, "Write your name."),
   capacity: z.enum(CAPACITIES, { error: "In which capacity do you write?" }),
   email: z.email("An address that mail reaches: the receipt and every answer go there.").max(254),
-  countryCode: z.string().regex(/^[A-Z]{2}$/, "Your country, as two letters."),
+  countryCode: z.string().regex(/^[A-Z]{2}$/, "Choose your country."),
   postal: z.string().trim().max(500).default(""),
-  workTitle: text(1, 200, "The title of your work."),
+  workTitle: text(1, 200, "Write the title of your work."),
   concerns: z.enum(CONCERNS, { error: "The work, the recording, or both?" }),
   writers: z.string().trim().max(500).default(""),
-  owner: text(2, 200, "Who owns it."),
+  owner: text(2, 200, "Say who owns it."),
   isrc: identifier(checkIsrc).default(""),
   iswc: identifier(checkIswc).default(""),
   release: z.string().trim().max(500).default(""),

@@ -14,12 +14,13 @@ import { setLevel } from "./actions";
 
 export const metadata: Metadata = { title: "Reported works" };
 
-function headFor(notices: ReportList["notices"]): string {
+function headFor(notices: ReportList["notices"], now: Date): string {
   const waiting = notices.filter((notice) => notice.state === "received" || notice.state === "under review");
   const first = waiting[0];
   if (!first) return "No report waits for you.";
-  const verb = waiting.length === 1 ? "waits" : "wait";
-  return `${fmt.countWord(waiting.length, "report")} ${verb} for a decision; the oldest was to be read by ${fmt.dateTime(first.dueAt)}.`;
+  const count = fmt.countWord(waiting.length, "report");
+  const due = `${first.dueAt < now ? "was" : "is"} due ${fmt.dateTime(first.dueAt, "Europe/London")}`;
+  return `${count.charAt(0).toUpperCase()}${count.slice(1)} ${waiting.length === 1 ? "waits" : "wait"} for a decision; the first reading of the oldest ${due}.`;
 }
 
 export default async function ReportedWorksPage() {
@@ -31,7 +32,7 @@ export default async function ReportedWorksPage() {
   const now = businessNow();
   return (
     <Page>
-      <HeadSentence place="Reported works">{headFor(notices)}</HeadSentence>
+      <HeadSentence place="Reported works">{headFor(notices, now)}</HeadSentence>
       <Section className="mt-8" head="By deadline" note="Each report is read; none is judged by software.">
         {open.length === 0 ? (
           <Empty>A report that somebody sends by the public form stands here until it is decided.</Empty>
