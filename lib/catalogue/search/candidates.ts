@@ -12,9 +12,10 @@ export interface Candidate {
 /** Only so many are weighed exactly; they are the ones that share most with the brief. */
 const WEIGHED_MAX = 400;
 
-/** Words of the brief's text as full-text search takes them: any of them, each also as a beginning. */
+/** Words of a text without accents, as the database's own collation compares them. */
 export function textWords(text: string): string[] {
-  return [...new Set(text.toLowerCase().match(/[\p{L}\p{N}]+/gu) ?? [])].filter((word) => word.length > 1);
+  const folded = text.toLowerCase().normalize("NFD").replace(/\p{M}/gu, "");
+  return [...new Set(folded.match(/[\p{L}\p{N}]+/gu) ?? [])].filter((word) => word.length > 1);
 }
 
 /** A word without its ending, where enough of it is left: "sneaking" and "sneaky" are both "sneak". */
