@@ -15,9 +15,15 @@ import {
   startPayee,
 } from "@/lib/ledger";
 import { ledgerHandlers } from "@/lib/ledger/jobs";
-import { approveOrder, openCheckout, openSeries, placeOrder, refundLines } from "@/lib/licensing";
+import {
+  approveOrder,
+  openCheckout,
+  openSeries,
+  placeOrder,
+  refundLines,
+  TERMS_VERSION,
+} from "@/lib/licensing";
 import { licensingHandlers } from "@/lib/licensing/jobs";
-import { TERMS_VERSION } from "@/lib/licensing/terms";
 import { listEventsSince, readCheckout } from "@/lib/payments";
 import { licences } from "./data/licences";
 import { buyerActor, productionOf } from "./productions";

@@ -19,4 +19,5 @@ export const declare = action(declareConflict, { refresh: casePage });
 export const papers = action(openPapers, { refresh: casePage });
 export const ask = action(askComposer, { refresh: casePage });
 export const find = action(recordFinding, { refresh: casePage });
-export const confirm = action(confirmFinding, { refresh: () => ["/cases", "/cases/[id]"] });
+/** After a confirmation the case may not be theirs to see any more: back to the queue. */
+export const confirm = action(confirmFinding, { refresh: () => ["/cases"], redirectTo: () => "/cases" });
