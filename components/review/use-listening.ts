@@ -1,6 +1,6 @@
 "use client";
 
-import { createContext, useContext, useEffect, useMemo, useRef, useState } from "react";
+import { createContext, type RefObject, useContext, useEffect, useMemo, useRef, useState } from "react";
 import { rememberedLevel, rememberLevel } from "@/components/player/player-engine";
 import {
   buildListeningGraph,
@@ -74,6 +74,59 @@ export function useListeningContext(): Listening {
   return listening;
 }
 
+interface Attached {
+  change: (part: Partial<ListeningState>) => void;
+  sounding: RefObject<Sounding | null>;
+  repeated: RefObject<Repeated | null>;
+  startAS: number;
+}
+
+/** What the element's own events change; returns what takes it apart again. */
+function attach(element: HTMLAudioElement, { change, sounding, repeated, startAS }: Attached): () => void {
+  const off = new AbortController();
+  const on = (name: string, run: () => void) => element.addEventListener(name, run, { signal: off.signal });
+  on("play", () => change({ isPlaying: true, problem: null }));
+  on("pause", () => change({ isPlaying: false }));
+  on("ended", () => change({ isPlaying: false }));
+  on("seeking", () => sounding.current?.graph.mute());
+  on("seeked", () => sounding.current?.graph.fadeIn());
+  on("playing", () => sounding.current?.graph.fadeIn());
+  on("error", () => {
+    if (element.getAttribute("src"))
+      change({ isPlaying: false, problem: "The two recordings could not be read together." });
+  });
+  on("timeupdate", () => {
+    const passage = repeated.current;
+    if (passage && startAS + element.currentTime >= passage.aToS)
+      element.currentTime = passage.aFromS - startAS;
+  });
+  return () => {
+    off.abort();
+    element.pause();
+    element.removeAttribute("src");
+    element.load();
+    sounding.current?.graph.stop();
+  };
+}
+
+/** Brings the file that is heard into the element, at the same instant. */
+function useHeardFile(audio: HTMLAudioElement | null, heardUrl: string): void {
+  useEffect(() => {
+    if (!audio || audio.src === new URL(heardUrl, window.location.href).href) return;
+    const atS = audio.currentTime;
+    const wasPlaying = !audio.paused;
+    audio.src = heardUrl;
+    audio.addEventListener(
+      "loadedmetadata",
+      () => {
+        audio.currentTime = atS;
+        if (wasPlaying) void audio.play();
+      },
+      { once: true },
+    );
+  }, [audio, heardUrl]);
+}
+
 /** One audio element of four channels, and the graph that lets a person change between them at the same instant. */
 export function useListening(source: ListeningSource): Listening {
   const { url, asDeliveredUrl, gainDb, durationS, startAS } = source;
@@ -94,50 +147,16 @@ export function useListening(source: ListeningSource): Listening {
     element.src = firstUrl.current;
     setAudio(element);
     setState((now) => ({ ...now, level: rememberedLevel() }));
-    const change = (part: Partial<ListeningState>) => setState((now) => ({ ...now, ...part }));
-    const off = new AbortController();
-    const on = (name: string, run: () => void) => element.addEventListener(name, run, { signal: off.signal });
-    on("play", () => change({ isPlaying: true, problem: null }));
-    on("pause", () => change({ isPlaying: false }));
-    on("ended", () => change({ isPlaying: false }));
-    on("seeking", () => sounding.current?.graph.mute());
-    on("seeked", () => sounding.current?.graph.fadeIn());
-    on("playing", () => sounding.current?.graph.fadeIn());
-    on("error", () => {
-      if (element.getAttribute("src"))
-        change({ isPlaying: false, problem: "The two recordings could not be read together." });
-    });
-    on("timeupdate", () => {
-      const passage = repeated.current;
-      if (passage && startAS + element.currentTime >= passage.aToS)
-        element.currentTime = passage.aFromS - startAS;
-    });
+    const change: Attached["change"] = (part) => setState((now) => ({ ...now, ...part }));
+    const detach = attach(element, { change, sounding, repeated, startAS });
     return () => {
-      off.abort();
-      element.pause();
-      element.removeAttribute("src");
-      element.load();
-      sounding.current?.graph.stop();
+      detach();
       void sounding.current?.context.close();
       sounding.current = null;
     };
   }, [startAS]);
 
-  const heardUrl = state.isUndone ? url : (asDeliveredUrl ?? url);
-  useEffect(() => {
-    if (!audio || audio.src === new URL(heardUrl, window.location.href).href) return;
-    const atS = audio.currentTime;
-    const wasPlaying = !audio.paused;
-    audio.src = heardUrl;
-    audio.addEventListener(
-      "loadedmetadata",
-      () => {
-        audio.currentTime = atS;
-        if (wasPlaying) void audio.play();
-      },
-      { once: true },
-    );
-  }, [audio, heardUrl]);
+  useHeardFile(audio, state.isUndone ? url : (asDeliveredUrl ?? url));
 
   return useMemo((): Listening => {
     const open = (element: HTMLAudioElement): Sounding => {
@@ -152,9 +171,8 @@ export function useListening(source: ListeningSource): Listening {
       return sounding.current;
     };
     const play = () => {
-      if (!audio) return;
-      void open(audio).context.resume();
-      audio.play().catch((cause: unknown) => {
+      if (audio) void open(audio).context.resume();
+      audio?.play().catch((cause: unknown) => {
         if (cause instanceof DOMException && cause.name === "AbortError") return;
         setState((now) => ({ ...now, problem: "The two recordings could not be played. Press again." }));
       });
