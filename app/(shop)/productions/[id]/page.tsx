@@ -1,27 +1,19 @@
 import type { Metadata } from "next";
 import { notFound, redirect } from "next/navigation";
 import { countryOptions } from "@/app/(account)/company/countries";
-import { OrderButtons } from "@/components/productions/order-buttons";
-import { PriceButton } from "@/components/productions/price-button";
-import { PriceFooting, ShortlistTable } from "@/components/productions/shortlist-table";
 import { UseForm } from "@/components/productions/use-form";
-import { ButtonLink, TextLink } from "@/components/ui/button";
+import { TextLink } from "@/components/ui/button";
 import { FactList } from "@/components/ui/facts";
 import { fmt } from "@/components/ui/format";
-import { AsideTitle, Page } from "@/components/ui/page";
+import { Page } from "@/components/ui/page";
 import { HeadSentence, Section, Sentence } from "@/components/ui/sentence";
 import { NotFound } from "@/lib/kernel/errors";
 import { getProduction, type ProductionPage } from "@/lib/productions";
 import { viewer } from "@/lib/web";
-import {
-  orderFromShortlist,
-  priceProduction,
-  removeFromShortlist,
-  setProductionUse,
-  setShortlistItem,
-} from "../../actions";
-import { productionWords, shortlistLines, standingWords } from "../shortlist-lines";
+import { priceProduction, setProductionUse } from "../../actions";
+import { productionWords, shortlistLines } from "../shortlist-lines";
 import { readProductionUse } from "../use-of-production";
+import { OwnShortlist } from "./own-shortlist";
 
 type Props = { params: Promise<{ id: string }> };
 
@@ -49,33 +41,7 @@ export default async function ProductionScreen({ params }: Props) {
   const { use, card, words } = await readProductionUse(actor, production);
   return (
     <Page
-      aside={
-        <>
-          <AsideTitle below={standingWords(lines)}>Its shortlist</AsideTitle>
-          <ShortlistTable
-            actions={{ setItem: setShortlistItem, removeItem: removeFromShortlist }}
-            inFull
-            lines={lines}
-          />
-          <PriceFooting lines={lines} useWords={words} />
-          <p className="mt-1 text-small">
-            {use && (
-              <PriceButton lines={lines} priceProduction={priceProduction} productionId={production.id} />
-            )}
-          </p>
-          <OrderButtons
-            lines={lines}
-            placeOrder={orderFromShortlist}
-            productionId={production.id}
-            use={use}
-          />
-          <p className="mt-4">
-            <ButtonLink href={`/find?production=${production.id}`} wide>
-              Find a cue for it
-            </ButtonLink>
-          </p>
-        </>
-      }
+      aside={<OwnShortlist lines={lines} production={production} use={use} words={words} />}
       asideLabel={`Shortlist of ${productionWords(production)}`}
     >
       <HeadSentence place={<TextLink href="/productions">Productions</TextLink>}>
