@@ -26,31 +26,37 @@ function inForceWords({ on, today }: Checked): string {
   return `${then}, and ${now}.`;
 }
 
+/** What the answer for the day says beyond the headline: why it is not in force, and questions that are open. */
+function addedWords({ on }: Checked): string {
+  return on.answer === "in force" ? on.sentence.split(". ").slice(1).join(". ") : on.sentence;
+}
+
 /** First whether it is genuine, then whether it is in force on the day asked about. */
 export function CheckVerdict({ checked }: { checked: Checked }) {
   const { licence, verdict } = checked;
   const isGenuine = verdict === "genuine";
   const { licensee, production } = licence;
   return (
-    <>
-      <div className="grid grid-cols-[2.25rem_minmax(0,1fr)] gap-x-3 sm:grid-cols-[3rem_minmax(0,1fr)]">
-        <Mark className="mt-8 sm:mt-9" kind={isGenuine ? "tick" : "warn"} sizePx={34} />
-        <HeadSentence
-          place={`Licence ${licence.number}, opened with its proof code. You need no account, and nothing about you is kept.${licence.demonstration ? " Demonstration." : ""}`}
-          size="huge"
-        >
-          {isGenuine ? "This licence is genuine." : "This licence does not verify."}
-          <br />
-          {isGenuine ? inForceWords(checked) : checked.sentence}
-        </HeadSentence>
+    <div className="grid grid-cols-[2.25rem_minmax(0,1fr)] gap-x-3 sm:grid-cols-[3rem_minmax(0,1fr)]">
+      <Mark className="mt-8 sm:mt-9" kind={isGenuine ? "tick" : "warn"} sizePx={34} />
+      <HeadSentence
+        place={`Licence ${licence.number}, opened with its proof code. You need no account, and nothing about you is kept.${licence.demonstration ? " Demonstration." : ""}`}
+        size="huge"
+      >
+        {isGenuine ? "This licence is genuine." : "This licence does not verify."}
+        <br />
+        {isGenuine ? inForceWords(checked) : checked.sentence}
+      </HeadSentence>
+      <div className="col-span-2 sm:col-span-1 sm:col-start-2">
+        <Sentence className="mt-4" size="lead">
+          {licence.licensor.legalName} lets {licensee ?? "a licensee, whose name is kept private,"} put{" "}
+          <Title>{licence.cue.title}</Title> to{" "}
+          {production.title ?? "a production whose title is kept private"}
+          {production.parts ? ` (${production.parts})` : ""}. {addedWords(checked)}{" "}
+          {isGenuine && "Nothing in the record has changed since it was signed."}
+        </Sentence>
       </div>
-      <Sentence className="mt-4" size="lead">
-        {licence.licensor.legalName} lets {licensee ?? "a licensee, whose name is kept private,"} put{" "}
-        <Title>{licence.cue.title}</Title> to {production.title ?? "a production whose title is kept private"}
-        {production.parts ? ` (${production.parts})` : ""}. {checked.on.sentence}{" "}
-        {isGenuine && "Nothing in the record has changed since it was signed."}
-      </Sentence>
-    </>
+    </div>
   );
 }
 

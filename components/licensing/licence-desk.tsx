@@ -24,6 +24,8 @@ interface LicenceDeskProps {
   productions: readonly { id: string; words: string }[];
   productionId: string | null;
   use: Use | null;
+  /** The price of what stands in the sentence at first. */
+  firstPrice: PriceAnswer | null;
   /** What the person looking may do. */
   standing: "buyer" | "signed in" | "stranger";
   propose: (
@@ -47,12 +49,15 @@ export function LicenceDesk(props: LicenceDeskProps) {
   const [wish, setWish] = useState<Wish>(() => wishOf(props.use, card));
   const [productionId, setProductionId] = useState(props.productionId ?? productions[0]?.id ?? null);
   const use = wantedUse(wish, card);
+  const [first] = useState(() => JSON.stringify([productionId, use]));
+  const isFirst = first === JSON.stringify([productionId, use]);
   const price = useQuery({
     queryKey: ["price", cue.familyId, productionId, use],
     queryFn: () =>
       use ? readPrice(cue.familyId, use, productionId) : Promise.reject(new Error("Say more.")),
     enabled: use !== null,
     placeholderData: (before) => before,
+    ...(isFirst && props.firstPrice ? { initialData: props.firstPrice } : {}),
   });
   const production = productions.find(({ id }) => id === productionId);
   return (
@@ -143,7 +148,7 @@ function OrderAside({
   return (
     <>
       <AsideTitle below="Before tax, which depends on where your company is.">
-        {price?.ok ? price.text : "No price on the card"}
+        {price?.ok ? price.text : price ? "No price on the card" : "Reading the price"}
       </AsideTitle>
       <p aria-live="polite" className="sr-only">
         {price?.ok ? `The price is ${price.text}.` : (price?.sentence ?? "")}

@@ -31,7 +31,7 @@ export function OrderAside({ order, isPaidFor, acts }: OrderAsideProps) {
         rows={[
           { name: "Net", value: order.net },
           { name: order.taxWords, value: order.tax },
-          { name: "To pay", value: <b>{order.gross}</b> },
+          { name: order.paidAt ? "Paid" : "To pay", value: <b>{order.gross}</b> },
         ]}
       />
       <div className="mt-5 grid gap-5">

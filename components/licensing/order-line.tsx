@@ -14,7 +14,17 @@ const MARKS: Record<string, "tick" | "warn" | "held" | "open"> = {
   "rights question open": "held",
 };
 
+const ENDED = ["refunded", "payment reversed", "rescinded", "cancelled", "superseded"];
+
 function MasterList({ line, mayFetch }: { line: OrderLinePage; mayFetch: boolean }) {
+  const isIssued = line.status !== null;
+  if (!isIssued || ENDED.includes(line.status?.kind ?? ""))
+    return (
+      <p className="mt-1 text-ink-soft">
+        With {fmt.list(line.versions.map(({ role, durationS }) => `${role} (${fmt.time(durationS)})`))}
+        {line.licenceNumber !== null && !isIssued ? "; the masters are being prepared." : "."}
+      </p>
+    );
   return (
     <ul className="mt-1">
       {line.versions.map(({ recordingId, role, durationS, hasMaster }) => (
@@ -61,7 +71,7 @@ export function OrderLine({ line, mayFetch }: { line: OrderLinePage; mayFetch: b
           {line.status.kind}
         </StatusSentence>
       )}
-      <MasterList line={line} mayFetch={mayFetch && line.licenceNumber !== null && line.status !== null} />
+      <MasterList line={line} mayFetch={mayFetch} />
       {line.factors.length > 0 && (
         <Disclosure className="mt-2" words={`Why ${line.net}`}>
           <FactorTable currency="" factors={line.factors} />

@@ -3,6 +3,7 @@ import type { OrderPage } from "@/lib/licensing";
 
 /** The state of an order in one sentence. */
 export function headOf(order: OrderPage, isPaidFor: boolean): string {
+  const held = order.lines.filter(({ isRefunded }) => !isRefunded).length;
   const count = fmt.countWord(order.lines.length, "licence");
   switch (order.state) {
     case "proposed":
@@ -14,7 +15,9 @@ export function headOf(order: OrderPage, isPaidFor: boolean): string {
     case "paid":
       return `Order ${order.number} is paid. Its records are signed as soon as the masters are ready.`;
     case "licensed":
-      return `${order.licensee.name} holds ${count} from ${order.libraryName} for ${order.production.title}.`;
+      return held === 0
+        ? `Order ${order.number} has been refunded in full; its licences have ended.`
+        : `${order.licensee.name} holds ${fmt.countWord(held, "licence")} of order ${order.number} from ${order.libraryName} for ${order.production.title}.`;
     case "refused":
       return `Order ${order.number} was not licensed, and its payment goes back in full.`;
     case "withdrawn":

@@ -4,10 +4,11 @@ import { fmt } from "@/components/ui/format";
 import { Section } from "@/components/ui/sentence";
 import { StatusSentence } from "@/components/ui/status-sentence";
 import { Title } from "@/components/ui/title";
+import { formatIsrc, formatIswc } from "@/lib/kernel/identifiers";
 import type { LicencePage } from "@/lib/licensing";
 
 function Hash({ children }: { children: string }) {
-  return <span className="figures text-small wrap-anywhere whitespace-normal">{children}</span>;
+  return <span className="font-figures text-small wrap-anywhere">{children}</span>;
 }
 
 function PartiesPart({ page }: { page: LicencePage }) {
@@ -60,11 +61,11 @@ function CuePart({ page }: { page: LicencePage }) {
     {
       name: "Cue",
       value: <Title>{cue.title}</Title>,
-      below: `${cue.library} ${cue.catalogueNumber}${cue.iswc ? `, ISWC ${cue.iswc}` : ""}${cue.otherTitles.length > 0 ? `; also known as ${cue.otherTitles.join(", ")}` : ""}`,
+      below: `${cue.library} ${cue.catalogueNumber}${cue.iswc ? `, ISWC ${formatIswc(cue.iswc)}` : ""}${cue.otherTitles.length > 0 ? `; also known as ${cue.otherTitles.join(", ")}` : ""}`,
     },
     ...cue.versions.map((version) => ({
       name: version.role,
-      value: `${fmt.time(version.durationMs / 1000)}${version.isrc ? `, ISRC ${version.isrc}` : ""}`,
+      value: `${fmt.time(version.durationMs / 1000)}${version.isrc ? `, ISRC ${formatIsrc(version.isrc)}` : ""}`,
       below: (
         <>
           {version.masterSha256 && (

@@ -26,6 +26,11 @@ export function TermStrip({ startsOn, lastUseAt, zone, onDate, today, stretches 
   const width = (a: number, b: number) => `${(((b - a) / (to - from)) * 100).toFixed(3)}%`;
   const years = Array.from({ length: lastYear - firstYear }, (_, index) => firstYear + index);
   const step = Math.max(1, Math.ceil(years.length / 5));
+  const isNear = (a: number, b: number) => Math.abs(a - b) / (to - from) < 0.08;
+  const isLate = (time: number) => (time - from) / (to - from) > 0.55;
+  const longest = [...stretches].sort((a, b) => (b.to ?? to) - b.from - ((a.to ?? to) - a.from))[0];
+  const isShort = (one: { from: number; to: number | null }) =>
+    (Math.min(one.to ?? to, to) - one.from) / (to - from) < 0.4;
   const until = lastUseAt ? `until ${fmt.date(lastUseAt, zone)}` : "without end";
   return (
     <svg
@@ -65,12 +70,28 @@ export function TermStrip({ startsOn, lastUseAt, zone, onDate, today, stretches 
         }),
       )}
       {years
-        .filter((_, index) => index % step === 0)
+        .filter((year, index) => index % step === 0 && !isNear(Date.UTC(year, 0, 1), at(today)))
         .map((year) => (
           <text className="fill-ink-soft" key={year} x={x(Date.UTC(year, 0, 1))} y="90">
             {year}
           </text>
         ))}
+      {longest && (
+        <svg aria-hidden className="overflow-visible" x={x(Math.min(longest.to ?? to, to))} y="46">
+          <text
+            className={isShort(longest) ? "case-page" : ""}
+            textAnchor={isShort(longest) ? "start" : "end"}
+            x={isShort(longest) ? 8 : -9}
+          >
+            In force {endWords(longest.to, lastUseAt, zone)}
+          </text>
+        </svg>
+      )}
+      {onDate !== today && (
+        <svg aria-hidden className="overflow-visible" x={x(at(today))} y="90">
+          <text textAnchor="middle">today</text>
+        </svg>
+      )}
       <line
         className="stroke-ink"
         strokeDasharray="2 3"
@@ -84,13 +105,24 @@ export function TermStrip({ startsOn, lastUseAt, zone, onDate, today, stretches 
         <line className="stroke-ink" strokeWidth="2" x1={x(at(onDate))} x2={x(at(onDate))} y1="12" y2="71" />
         <svg aria-hidden className="overflow-visible" x={x(at(onDate))} y="6">
           <path className="fill-ink" d="M-5 0h10L0 8z" />
+          <text textAnchor={isLate(at(onDate)) ? "end" : "start"} x={isLate(at(onDate)) ? -11 : 11} y="8">
+            {fmt.date(`${onDate}T12:00:00Z`)}
+            {onDate === today ? ", today" : ", the day you asked about"}
+          </text>
         </svg>
       </g>
     </svg>
   );
 }
 
-/** From the answers of the days between, without knowing the rules: what ended it is a dated line of the history. */
+function endWords(to: number | null, lastUseAt: string | null, zone: string): string {
+  if (to === null) return "without end";
+  return lastUseAt && Date.parse(lastUseAt) === to
+    ? `until ${fmt.date(lastUseAt, zone)}`
+    : `until it ended on ${fmt.date(to, zone)}`;
+}
+
+/** When it is in force, drawn from the dated lines of its history. The answer in words comes from the check itself. */
 export function stretchesOf(
   startsOn: string,
   lastUseAt: string | null,

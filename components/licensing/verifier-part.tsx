@@ -27,7 +27,7 @@ export function VerifierPart({ proof }: { proof?: string }) {
         </li>
         <li>
           Run{" "}
-          <span className="figures text-small">
+          <span className="font-figures text-small wrap-anywhere">
             node sedgewren-verify.mjs record.json sedgewren-keys.json
           </span>
           . It says genuine, or which part was altered. It opens no connection.

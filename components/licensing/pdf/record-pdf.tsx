@@ -1,6 +1,7 @@
 import { Document, Page, renderToBuffer, Text, View } from "@react-pdf/renderer";
 import { STANDING_CAUTION } from "@/components/ui/caution";
 import { fmt } from "@/components/ui/format";
+import { formatIsrc, formatIswc } from "@/lib/kernel/identifiers";
 import type { LicencePage } from "@/lib/licensing";
 import { registerFonts } from "./fonts";
 import { Fact, look, Part, Square, Work } from "./parts";
@@ -121,7 +122,7 @@ function Cue({ page }: Props) {
     <>
       <Part head="The work and the recording">
         <Fact
-          below={`${cue.library} ${cue.catalogueNumber}${cue.iswc ? `, ISWC ${cue.iswc}` : ""}${cue.otherTitles.length > 0 ? `; also ${cue.otherTitles.join(", ")}` : ""}`}
+          below={`${cue.library} ${cue.catalogueNumber}${cue.iswc ? `, ISWC ${formatIswc(cue.iswc)}` : ""}${cue.otherTitles.length > 0 ? `; also ${cue.otherTitles.join(", ")}` : ""}`}
           name="Cue"
         >
           <Work>{cue.title}</Work>
@@ -133,7 +134,7 @@ function Cue({ page }: Props) {
             name={version.role}
           >
             {fmt.time(version.durationMs / 1000)}
-            {version.isrc ? `, ISRC ${version.isrc}` : ""}
+            {version.isrc ? `, ISRC ${formatIsrc(version.isrc)}` : ""}
           </Fact>
         ))}
         <Fact name="Writers">{shares.writers.map(person).join("; ")}</Fact>

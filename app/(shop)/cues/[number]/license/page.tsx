@@ -2,6 +2,7 @@ import type { Metadata } from "next";
 import { notFound } from "next/navigation";
 import { countryOptions } from "@/app/(account)/company/countries";
 import { LicenceDesk } from "@/components/licensing/licence-desk";
+import { wantedUse, wishOf } from "@/components/licensing/wish";
 import { TextLink } from "@/components/ui/button";
 import { Page } from "@/components/ui/page";
 import { Problem } from "@/components/ui/problem";
@@ -10,7 +11,7 @@ import { Title } from "@/components/ui/title";
 import { getCue } from "@/lib/catalogue";
 import type { Actor } from "@/lib/kernel/actor";
 import { NotFound } from "@/lib/kernel/errors";
-import { getCardForCue } from "@/lib/licensing";
+import { getCardForCue, priceUse } from "@/lib/licensing";
 import { Use } from "@/lib/licensing/rate-card";
 import { getProduction, listProductions } from "@/lib/productions";
 import { viewer } from "@/lib/web";
@@ -73,6 +74,14 @@ export default async function LicencePage({ params, searchParams }: Props) {
     );
   }
   const { productions, chosen, use } = await productionsOf(actor, (await searchParams).production);
+  const first = wantedUse(wishOf(use, card), card);
+  const firstPrice = first
+    ? await priceUse(actor, {
+        familyId: cue.familyId,
+        use: first,
+        ...(chosen ? { productionId: chosen } : {}),
+      })
+    : null;
   return (
     <LicenceDesk
       card={card}
@@ -84,6 +93,7 @@ export default async function LicencePage({ params, searchParams }: Props) {
         libraryName: cue.library.name,
         currency: cue.library.currency,
       }}
+      firstPrice={firstPrice}
       productionId={chosen}
       productions={productions}
       propose={proposeOrder}
