@@ -4,8 +4,11 @@ export interface Thresholds {
   /** Nats of LLR and LLR2 from which a hit is held… */
   holdEvidence: number;
   holdEvidence2: number;
-  /** …if this share of landmarks coincides: the looser the fit, the more. Another take of the same notes fits loosely. */
+  /** …if this share of landmarks coincides: the looser the fit, the more. Copies, however altered, fit close or fair on real
+   *  music; another take of the same notes, or the same pattern by the same sampler, fits loosely. */
   holdShare: Readonly<Record<Fit, number>>;
+  /** The share needed where the reference agrees with itself almost as well elsewhere. */
+  holdShareIndistinct: number;
   /** From which it is shown to a person on request. */
   weakEvidence: number;
   weakEvidence2: number;
@@ -16,6 +19,7 @@ export const DEFAULT_THRESHOLDS: Readonly<Thresholds> = Object.freeze({
   holdEvidence: 100,
   holdEvidence2: 50,
   holdShare: SHARE_MIN,
+  holdShareIndistinct: 0.5,
   weakEvidence: 50,
   weakEvidence2: 8,
 });
@@ -24,10 +28,11 @@ export type Band = "hold" | "weak" | "ignore";
 
 export function band(hit: Hit, thresholds: Readonly<Thresholds> = DEFAULT_THRESHOLDS): Band {
   const { evidence, evidence2, matchedShare, fit } = hit;
+  const indistinctMin = hit.lowDistinctiveness ? thresholds.holdShareIndistinct : 0;
   if (
     evidence >= thresholds.holdEvidence &&
     evidence2 >= thresholds.holdEvidence2 &&
-    matchedShare >= thresholds.holdShare[fit]
+    matchedShare >= Math.max(indistinctMin, thresholds.holdShare[fit])
   ) {
     return "hold";
   }
@@ -59,7 +64,7 @@ export function mergeChannelHits(byChannel: Partial<Record<Channel, Hit[]>>): Hi
     const surest = entry[channel] ?? entry.mid ?? entry.left ?? entry.right;
     if (surest !== undefined) out.push({ ...surest, channel });
   }
-  return out.sort(surestFirst);
+  return oneWayEach(out);
 }
 
 function nameChannel(
@@ -77,6 +82,19 @@ function nameChannel(
   else if (right >= SIDE_RATIO * mid && right > 0) return "right";
   if (entry.mid !== undefined) return "mid";
   return left >= right ? "left" : "right";
+}
+
+/**
+ * One hit per reference, the surest, surest first: whoever agrees forwards agrees a little backwards too, where chords and
+ * drum beats mirror onto themselves.
+ */
+export function oneWayEach(hits: Hit[]): Hit[] {
+  const seen = new Set<string>();
+  return [...hits].sort(surestFirst).filter((hit) => {
+    if (seen.has(hit.id)) return false;
+    seen.add(hit.id);
+    return true;
+  });
 }
 
 /** Surest first; equal evidence in order of id, so that no result depends on the order of insertion. */

@@ -89,8 +89,7 @@ export function comparability(fp: Fingerprint): Comparability {
   if (fp.contentS >= CONTENT_MIN_S && countIndexPeaks(fp) >= LANDMARKS_MIN) return { comparable: true };
   const lost = { silence: 0, tone: 0, "low information": 0 };
   for (const span of fp.notComparable) lost[span.reason] += span.endS - span.startS;
-  const total = lost.silence + lost.tone + lost["low information"];
-  if (fp.durationS < CONTENT_MIN_S && total < fp.durationS / 2)
+  if (fp.durationS < CONTENT_MIN_S && lost.silence < fp.durationS)
     return { comparable: false, reason: "too short" };
   if (lost.silence >= lost.tone && lost.silence >= lost["low information"] && lost.silence > 0) {
     return { comparable: false, reason: "silence" };

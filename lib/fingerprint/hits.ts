@@ -34,6 +34,8 @@ export interface Hit {
   evidence2: number;
   /** Share of the query's landmarks that coincide, on the best alignment's passages. */
   matchedShare: number;
+  /** The share that shifted alignments reach: mean + 2.5 σ. */
+  chanceShare: number;
   fit: Fit;
   /** Expected number of such hits in screening one honest recording; null until calibrated. */
   chance: number | null;
@@ -69,7 +71,7 @@ const FURTHER_NATS2_MIN = 15;
 export const SHARE_MIN: Readonly<Record<Fit, number>> = Object.freeze({
   close: 0.13,
   fair: 0.16,
-  loose: 0.22,
+  loose: 0.6,
 });
 /** Of a passage already explained by a surer one, this much must be new. */
 const NEW_SHARE = 0.5;
@@ -88,10 +90,11 @@ export function makeHit(
   const best = ranked[0];
   if (best === undefined || best.evidence < HIT_NATS_MIN) return null;
   const passages: Passage[] = [];
-  for (const alignment of ranked) {
-    if (alignment !== best && !standsAlone(alignment)) continue;
-    addPassages(passages, query, reference, alignment);
-  }
+  const stretches = ranked
+    .filter((one) => one === best || standsAlone(one))
+    .flatMap((one) => stretchesOf(query, reference, one));
+  stretches.sort((x, y) => y.evidence - x.evidence);
+  for (const stretch of stretches) addPassages(passages, query, reference, stretch);
   if (passages.length === 0) return null;
   passages.sort((x, y) => x.startS - y.startS);
   widen(passages, queryFp.durationS, referenceFp.durationS);
@@ -104,6 +107,7 @@ export function makeHit(
     evidence: best.evidence,
     evidence2: best.evidence2,
     matchedShare: rate,
+    chanceShare: best.score.chanceHigh,
     fit: fitOf(best),
     chance: null,
     speed: best.map.a,
@@ -150,19 +154,35 @@ function turnRound(passage: Passage, durationS: number): Passage {
   return { ...passage, startS: durationS - passage.endS, endS: durationS - passage.startS };
 }
 
-function addPassages(passages: Passage[], query: Prepared, reference: Prepared, alignment: Alignment): void {
-  const taken = passages.map((p): [number, number] => [p.startS, p.endS]);
-  for (const span of alignment.spans) {
+/** One span of one alignment, with the evidence of its own peaks. */
+interface Stretch {
+  alignment: Alignment;
+  span: Span;
+  evidence: number;
+}
+
+function stretchesOf(query: Prepared, reference: Prepared, alignment: Alignment): Stretch[] {
+  return alignment.spans.map((span) => {
     const startS = framesToS(query.timeFrames[span[0]]!);
     const endS = framesToS(query.timeFrames[span[1] - 1]!);
-    const rest = subtract([startS, endS], taken);
-    const restS = rest.reduce((sum, [from, to]) => sum + to - from, 0);
-    if (restS < NEW_SHARE * (endS - startS)) continue;
-    for (const [from, to] of rest) {
-      if (to - from < Math.min(NEW_MIN_S, endS - startS)) continue;
-      const passage = describePassage(query, reference, alignment, span, from, to);
-      if (passage.evidence >= PASSAGE_NATS_MIN) passages.push(passage);
-    }
+    const { evidence } = describePassage(query, reference, alignment, span, startS, endS);
+    return { alignment, span, evidence };
+  });
+}
+
+/** Adds what of a stretch no surer one has explained: the surest stretch first, whichever alignment it belongs to. */
+function addPassages(passages: Passage[], query: Prepared, reference: Prepared, stretch: Stretch): void {
+  const { alignment, span } = stretch;
+  const taken = passages.map((p): [number, number] => [p.startS, p.endS]);
+  const startS = framesToS(query.timeFrames[span[0]]!);
+  const endS = framesToS(query.timeFrames[span[1] - 1]!);
+  const rest = subtract([startS, endS], taken);
+  const restS = rest.reduce((sum, [from, to]) => sum + to - from, 0);
+  if (restS < NEW_SHARE * (endS - startS)) return;
+  for (const [from, to] of rest) {
+    if (to - from < Math.min(NEW_MIN_S, endS - startS)) continue;
+    const passage = describePassage(query, reference, alignment, span, from, to);
+    if (passage.evidence >= PASSAGE_NATS_MIN) passages.push(passage);
   }
 }
 

@@ -1,5 +1,5 @@
 import type { Candidate } from "./candidates";
-import { surestFirst } from "./decision";
+import { oneWayEach } from "./decision";
 import { comparability, type Fingerprint } from "./fingerprint";
 import { type Hit, makeHit } from "./hits";
 import { mirrorFingerprint } from "./mirror";
@@ -162,8 +162,8 @@ class MemoryIndex implements SearchIndex {
     this.#flush();
     const hits = yield* this.#searchOneWay(fp, options, false);
     if (options.reversed) hits.push(...(yield* this.#searchOneWay(mirrorFingerprint(fp), options, true)));
-    hits.sort(surestFirst);
-    return options.limit === undefined ? hits : hits.slice(0, options.limit);
+    const surest = oneWayEach(hits);
+    return options.limit === undefined ? surest : surest.slice(0, options.limit);
   }
 
   *#searchOneWay(

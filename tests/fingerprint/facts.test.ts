@@ -92,6 +92,7 @@ describe("common practice", () => {
       holdEvidence: 1e9,
       holdEvidence2: 0,
       holdShare: { close: 0, fair: 0, loose: 0 },
+      holdShareIndistinct: 0,
       weakEvidence: 1e9,
       weakEvidence2: 0,
     };
