@@ -1,7 +1,16 @@
 import { eq } from "drizzle-orm";
 import { db } from "@/db/client";
 import { people } from "@/db/schema/accounts";
-import { libraries, recordings } from "@/db/schema/catalogue";
+import {
+  families,
+  familyTerms,
+  holds,
+  libraries,
+  licensedMasters,
+  recordings,
+  splitShares,
+  splitVersions,
+} from "@/db/schema/catalogue";
 import {
   type ComposerKey,
   type CueRow,
@@ -66,8 +75,24 @@ const COMPOSERS: Record<ComposerKey, string> = {
   H: "Hikaru Westenvelt",
 };
 
-/** The forty cues of the demonstration as listed families without their sound: for search, pages and shortlists. */
+/** A test process keeps its database from file to file, and these cues are counted: what was listed before is taken away. */
+async function emptyCatalogue(): Promise<void> {
+  const tables = [
+    families,
+    familyTerms,
+    holds,
+    libraries,
+    licensedMasters,
+    recordings,
+    splitShares,
+    splitVersions,
+  ];
+  for (const table of tables) await db().delete(table);
+}
+
+/** The forty cues of the demonstration and nothing else, listed, without their sound: for search, pages, shortlists. */
 export async function fillCues(options: FillOptions = {}): Promise<Map<number, FilledCue>> {
+  await emptyCatalogue();
   const libraryIds = new Map<LibraryCode, string>();
   for (const [code, library] of Object.entries(LIBRARIES) as [LibraryCode, (typeof LIBRARIES)["SM"]][]) {
     const [there] = await db().select({ id: libraries.id }).from(libraries).where(eq(libraries.code, code));
