@@ -11,6 +11,7 @@ import { Header, SkipLink } from "@/components/shell/header";
 import { FOOTER_LINKS, navFor } from "@/components/shell/nav";
 import { fmt } from "@/components/ui/format";
 import { UiProvider } from "@/components/ui/ui-provider";
+import { countListed } from "@/lib/catalogue";
 import { isMarketplace } from "@/lib/kernel/actor";
 import { businessNow } from "@/lib/kernel/clock";
 import { env } from "@/lib/kernel/env";
@@ -18,7 +19,8 @@ import { type Viewer, viewer } from "@/lib/web";
 
 export const metadata: Metadata = {
   title: { default: "Sedgewren", template: "%s · Sedgewren" },
-  description: "Production music from independent libraries: every recording screened before it is listed, every licence a record that can be checked.",
+  description:
+    "Production music from independent libraries: every recording screened before it is listed, every licence a record that can be checked.",
 };
 
 export const viewport: Viewport = { width: "device-width", initialScale: 1, colorScheme: "light dark" };
@@ -27,7 +29,7 @@ export default async function RootLayout({ children }: { children: ReactNode }) 
   const nonce = (await headers()).get("x-nonce") ?? undefined;
   const who = await viewer();
   const isDemo = env.SEDGEWREN_MODE === "demo";
-  const clock = isDemo ? `Its clock says ${fmt.dateTime(businessNow(), "UTC")}; it started on 18 May 2026 and runs on.` : fmt.dateTime(businessNow(), "UTC");
+  const clock = isDemo ? await demonstrationWords(who) : fmt.dateTime(businessNow(), "UTC");
   return (
     <html lang="en-GB">
       <body className="flex min-h-dvh flex-col">
@@ -36,9 +38,19 @@ export default async function RootLayout({ children }: { children: ReactNode }) 
             <QueryProvider>
               <PlayerProvider>
                 <SkipLink />
-                <Header items={navFor(who.actor.kind, isMarketplace(who.actor))} person={signedIn(who)} switchRole={chooseRole} />
+                <Header
+                  items={navFor(who.actor.kind, isMarketplace(who.actor))}
+                  person={signedIn(who)}
+                  switchRole={chooseRole}
+                />
                 {children}
-                <Footer clock={clock} demonstration={isDemo ? "Demonstration. Every name, work and price here is invented." : undefined} links={FOOTER_LINKS} />
+                <Footer
+                  clock={clock}
+                  demonstration={
+                    isDemo ? "Demonstration. Every name, work and price here is invented." : undefined
+                  }
+                  links={FOOTER_LINKS}
+                />
               </PlayerProvider>
             </QueryProvider>
           </NuqsAdapter>
@@ -46,6 +58,14 @@ export default async function RootLayout({ children }: { children: ReactNode }) 
       </body>
     </html>
   );
+}
+
+/** What the foot of every page of a demonstration says: its clock, and how much of it is in. */
+async function demonstrationWords(who: Viewer): Promise<string> {
+  const { cues } = await countListed(who.actor, {});
+  const growing =
+    cues < env.DEMO_CUES ? ` ${cues} of its ${env.DEMO_CUES} cues are in; the rest is being screened.` : "";
+  return `Its clock says ${fmt.dateTime(businessNow(), "UTC")}; it started on 18 May 2026 and runs on.${growing}`;
 }
 
 function signedIn(who: Viewer) {

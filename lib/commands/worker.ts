@@ -2,6 +2,7 @@ import { closeDb } from "@/db/client";
 import { demonstrationHandlers } from "@/db/seed/jobs";
 import { closeDemonstration } from "@/db/seed/masters";
 import { catalogueHandlers } from "@/lib/catalogue/jobs";
+import { closeRendering } from "@/lib/catalogue/rendering/render-recording";
 import { deliveriesHandlers } from "@/lib/deliveries/jobs";
 import { closeMeasuring } from "@/lib/deliveries/measuring/measure-version";
 import { type Handlers, runWorker } from "@/lib/jobs";
@@ -34,5 +35,5 @@ for (const signal of ["SIGTERM", "SIGINT"] as const) process.on(signal, () => st
 
 log.info("the worker is ready");
 await runWorker({ handlers, signal: stop.signal, onTick: enqueueSlots });
-await Promise.allSettled([closeScreeningEngine(), closeMeasuring(), closeDemonstration()]);
+await Promise.allSettled([closeScreeningEngine(), closeMeasuring(), closeRendering(), closeDemonstration()]);
 await closeDb();
