@@ -189,6 +189,8 @@ export const fmt = {
     return word ? `${word} ${value === 1 ? one : many}` : count(value, one, many);
   },
   /** "no drums, bed, sting and stems" */
+  /** The same words at the head of a sentence. */
+  opening: (words: string): string => words.charAt(0).toLocaleUpperCase("en-GB") + words.slice(1),
   list: (items: readonly string[], last = "and"): string =>
     items.length < 2
       ? (items[0] ?? "")

@@ -22,10 +22,12 @@ export default async function CasesPage() {
       <HeadSentence place="Review">
         {waiting.length === 0
           ? "No case waits for you."
-          : `${fmt.countWord(waiting.length, "case")} ${waiting.length === 1 ? "waits" : "wait"} for an answer`}
+          : fmt.opening(
+              `${fmt.countWord(waiting.length, "case")} ${waiting.length === 1 ? "waits" : "wait"} for an answer`,
+            )}
         {first && `; the first look at the oldest is due ${fmt.dateTime(first.dueAt)}.`}
       </HeadSentence>
-      <Section head="By deadline" note="A match is a question, never a verdict.">
+      <Section className="mt-6" head="By deadline" note="A match is a question, never a verdict.">
         {open.length === 0 ? (
           <Empty>
             When a delivery shares sound with something held, and nothing known explains it, it stands here

@@ -16,7 +16,7 @@ import { ask, confirm, declare, find, papers, passOn, take } from "../actions";
 
 export const metadata: Metadata = { title: "A case" };
 
-export default async function CasePage({ params }: PageProps<"/cases/[id]">) {
+export default async function CasePage({ params }: { params: Promise<{ id: string }> }) {
   const { id } = await params;
   const { actor } = await viewer();
   if (actor.kind !== "moderator") notFound();
