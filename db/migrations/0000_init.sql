@@ -635,6 +635,7 @@ CREATE TABLE `order_refunds` (
 	`order_id` varchar(40) character set ascii collate ascii_bin NOT NULL,
 	`line_ids` json NOT NULL,
 	`amount_minor` bigint NOT NULL,
+	`currency` varchar(3) character set ascii collate ascii_bin NOT NULL,
 	`words` varchar(500) NOT NULL,
 	`state` varchar(8) character set ascii collate ascii_bin NOT NULL,
 	`payment_intent` varchar(80) character set ascii collate ascii_bin NOT NULL,

@@ -184,6 +184,7 @@ export const orderRefunds = mysqlTable(
     /** Empty: the payment of an order for which nothing was issued. */
     lineIds: jsonOf<string[]>("line_ids").notNull(),
     amountMinor: minor("amount_minor").notNull(),
+    currency: ascii(3)("currency").notNull(),
     words: varchar("words", { length: 500 }).notNull(),
     /** asked, done */
     state: ascii(8)("state").notNull(),

@@ -43,6 +43,7 @@ export { confirmPayoutRun, preparePayoutRun, releasePayoutRun } from "./payout-r
 export { type EntryToPost, type LineRef, type PostedEntry, postEntry } from "./post-entry";
 export { recordAdvance } from "./record-advance";
 export { postRefund, type RefundOfLines } from "./refund";
+export { postRefusedPayment, postReturnedPayment, type RefusedPayment } from "./refused-payment";
 export { listDueHolds, releaseHolds } from "./release-holds";
 export { beginPayout, type PayoutToSend, recordPayoutFailed, recordPayoutSent } from "./send-payout";
 export { listUnsettled, type SettledMovement, settlePayments } from "./settle";

@@ -11,6 +11,7 @@ export const ACCOUNT_KINDS = [
   "composer held",
   "composer available",
   "dispute cost",
+  "refunds to send",
 ] as const;
 export type AccountKind = (typeof ACCOUNT_KINDS)[number];
 
@@ -33,6 +34,8 @@ export const ENTRY_CODES = [
   "recoupment reversed",
   "dispute charge",
   "reversal",
+  "payment refused",
+  "payment returned",
 ] as const;
 export type EntryCode = (typeof ENTRY_CODES)[number];
 
@@ -48,6 +51,8 @@ export const ENTRY_WORDS: Readonly<Record<EntryCode, string>> = {
   "recoupment reversed": "Repayment of an advance put back",
   "dispute charge": "Charge for a dispute",
   reversal: "Dispute won",
+  "payment refused": "Payment without a licence",
+  "payment returned": "Payment given back",
 };
 
 /** Days from a capture until its earnings become available, if the setting `ledger.holdDays` does not say otherwise. */

@@ -4,11 +4,12 @@ import { afterAll, beforeAll, describe, expect, test } from "vitest";
 import { db } from "@/db/client";
 import { mailOutbox } from "@/db/schema/infrastructure";
 import { auditLog } from "@/db/schema/kernel";
-import { ledgerEntries, ledgerTransfers } from "@/db/schema/ledger";
+import { ledgerAccounts, ledgerEntries, ledgerTransfers } from "@/db/schema/ledger";
 import { invoices, licenceRecords, numberSeries, orderLines, orders } from "@/db/schema/licensing";
 import { placeHold } from "@/lib/catalogue";
 import { system } from "@/lib/kernel/actor";
 import { isMod3736 } from "@/lib/kernel/check-characters";
+import { checkLedger } from "@/lib/ledger";
 import {
   approveOrder,
   completePayment,
@@ -66,6 +67,20 @@ const isDone =
   (checkoutId: string) =>
   ({ type, text }: { type: string; text: string }) =>
     type === "checkout.session.completed" && text.includes(checkoutId);
+
+/** What an order has left in clearing: what came less what went. */
+async function clearingOf(orderId: string): Promise<bigint> {
+  const ids = (await entriesOf(orderId)).map(({ id }) => id);
+  const legs = await db().select().from(ledgerTransfers).where(inArray(ledgerTransfers.entryId, ids));
+  const accounts = await db()
+    .select({ id: ledgerAccounts.id })
+    .from(ledgerAccounts)
+    .where(eq(ledgerAccounts.kind, "processor clearing"));
+  const isClearing = (id: string) => accounts.some((account) => account.id === id);
+  const signed = ({ debitAccountId, creditAccountId, amountMinor }: (typeof legs)[number]) =>
+    (isClearing(debitAccountId) ? amountMinor : 0n) - (isClearing(creditAccountId) ? amountMinor : 0n);
+  return legs.reduce((sum, leg) => sum + signed(leg), 0n);
+}
 
 describe("an order", () => {
   test("the first order and its licences go on where the installation's numbers began", async () => {
@@ -229,7 +244,13 @@ describe("a payment", () => {
     expect((await readCheckout(checkoutId)).payment?.refunded.minor).toBe(28_800n);
     expect(await recordsOf(shop.productionId)).toHaveLength(0);
     expect(await db().select().from(invoices).where(eq(invoices.orderId, orderId))).toHaveLength(0);
-    expect((await entriesOf(orderId)).filter(({ code }) => code === "capture")).toHaveLength(0);
+    expect((await entriesOf(orderId)).map(({ code }) => code).sort()).toEqual([
+      "payment refused",
+      "payment returned",
+    ]);
+    // 1.5 % of 288.00 and 0.20: the far end keeps its fee, and the platform bears it.
+    expect(await clearingOf(orderId)).toBe(-452n);
+    expect(await checkLedger(system("tests"), {})).toEqual([]);
     const [mail] = await db()
       .select()
       .from(mailOutbox)

@@ -11,7 +11,7 @@ import { newId } from "@/lib/kernel/ids";
 import { licenceNumber } from "@/lib/kernel/licence-number";
 import { formatMoney, money } from "@/lib/kernel/money";
 import { command } from "@/lib/kernel/verb";
-import { postCapture } from "@/lib/ledger";
+import { postCapture, postRefusedPayment } from "@/lib/ledger";
 import { productionById } from "@/lib/productions";
 import { orderObstacle } from "./approve-order";
 import { issueWhenReady } from "./issue-licences";
@@ -48,6 +48,7 @@ export async function askRefund(
     order: OrderRow;
     lineIds: string[];
     amountMinor: bigint;
+    currency: string;
     paymentId: string;
     words: string;
     askedBy: string | null;
@@ -60,6 +61,7 @@ export async function askRefund(
     orderId: refund.order.id,
     lineIds: refund.lineIds,
     amountMinor: refund.amountMinor,
+    currency: refund.currency,
     words: refund.words.slice(0, 500),
     state: "asked",
     paymentIntent: refund.paymentId,
@@ -71,7 +73,13 @@ export async function askRefund(
 }
 
 /** LICENSING-2: nothing is issued, everything goes back, and the order says why. */
-async function refuse(tx: Tx, order: OrderRow, paid: Paid, why: string, now: Date): Promise<Completion> {
+async function refuse(
+  tx: Tx,
+  order: OrderRow,
+  paid: Paid,
+  why: string,
+  { now, actor }: { now: Date; actor: Actor },
+): Promise<Completion> {
   const words = `${why} Your payment goes back in full and nothing was licensed.`;
   const isSecond = order.state === "paid" || order.state === "licensed" || order.state === "refused";
   if (!isSecond)
@@ -83,10 +91,23 @@ async function refuse(tx: Tx, order: OrderRow, paid: Paid, why: string, now: Dat
     order,
     lineIds: [],
     amountMinor: paid.grossMinor,
+    currency: paid.currency,
     paymentId: paid.paymentId,
     words,
     askedBy: null,
     now,
+  });
+  await postRefusedPayment(tx, {
+    orderId: order.id,
+    paymentId: paid.paymentId,
+    currency: paid.currency,
+    grossMinor: paid.grossMinor,
+    feeMinor: paid.feeMinor,
+    chargeId: paid.chargeId,
+    words: `Order ${orderNumber(order)} was paid and not licensed. ${why}`,
+    eventAt: now,
+    now,
+    actor,
   });
   return { outcome: "refused" };
 }
@@ -182,16 +203,18 @@ export const completePayment = command({
     return order;
   },
   run: async ({ tx, actor, input: paid, subject: order, now }): Promise<Completion> => {
+    const when = { now, actor };
     if (order.paymentIntent === paid.paymentId) return { outcome: "already" };
-    if (order.paymentIntent !== null) return refuse(tx, order, paid, "The order had been paid already.", now);
+    if (order.paymentIntent !== null)
+      return refuse(tx, order, paid, "The order had been paid already.", when);
     const wrong = mismatch(order, paid);
-    if (wrong) return refuse(tx, order, paid, wrong, now);
+    if (wrong) return refuse(tx, order, paid, wrong, when);
 
     const lines = await linesOf(tx, order.id);
     for (const familyId of [...new Set(lines.map((line) => line.familyId))].sort())
       await lockFamily(tx, familyId);
     const obstacle = await orderObstacle(tx, order, lines, now);
-    if (obstacle) return refuse(tx, order, paid, obstacle, now);
+    if (obstacle) return refuse(tx, order, paid, obstacle, when);
 
     const library = await libraryById(tx, order.libraryId);
     assert(library, `the library of ${order.id} is there`);

@@ -76,6 +76,7 @@ export async function mailRefund(
   args: {
     order: OrderRow;
     amountMinor: bigint;
+    currency: string;
     refundedAt: Date;
     reason: string;
     creditNoteNumber: string | null;
@@ -92,7 +93,7 @@ export async function mailRefund(
     subjectId: order.id,
     props: {
       orderNumber: orderNumber(order),
-      amount: mailAmount(money(args.amountMinor, order.currency)),
+      amount: mailAmount(money(args.amountMinor, args.currency)),
       refundedAt: args.refundedAt.toISOString(),
       reason: args.reason,
       ...(args.creditNoteNumber ? { creditNoteNumber: args.creditNoteNumber } : {}),

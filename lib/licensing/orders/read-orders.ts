@@ -192,9 +192,9 @@ export const getOrder = query({
         gross: body.gross,
         currency: body.currency,
       })),
-      refunds: refunds.map(({ words, amountMinor, state, askedAt, doneAt }) => ({
+      refunds: refunds.map(({ words, amountMinor, currency, state, askedAt, doneAt }) => ({
         words,
-        amount: text(amountMinor),
+        amount: formatMoney(money(amountMinor, currency)),
         state,
         at: doneAt ?? askedAt,
       })),

@@ -8,7 +8,7 @@ import type { Actor } from "@/lib/kernel/actor";
 import { assert, NotFound, Precondition } from "@/lib/kernel/errors";
 import { formatMoney, money } from "@/lib/kernel/money";
 import { command, query } from "@/lib/kernel/verb";
-import { postRefund } from "@/lib/ledger";
+import { postRefund, postReturnedPayment } from "@/lib/ledger";
 import { addLicenceStatus, statusHistory } from "../records/record-log";
 import { RefundLines } from "../schemas";
 import { askRefund } from "./complete-payment";
@@ -72,6 +72,7 @@ export const refundLines = command({
       order,
       lineIds: lines.map(({ id }) => id),
       amountMinor: grossOf(lines),
+      currency: order.currency,
       paymentId: order.paymentIntent,
       words: input.words,
       askedBy: actor.kind === "system" ? null : actor.personId,
@@ -98,16 +99,12 @@ export const readRefund = query({
   who: ["system"],
   input: z.object({ refundId: z.string().max(40) }),
   authorise: ({ reader, input }) => refundById(reader, input.refundId),
-  run: async ({ reader, subject: refund }) => {
-    const order = await orderById(reader, refund.orderId);
-    assert(order, `the order of refund ${refund.id} is there`);
-    return {
-      orderId: refund.orderId,
-      paymentId: refund.paymentIntent,
-      amount: money(refund.amountMinor, order.currency),
-      isDone: refund.state === "done",
-    };
-  },
+  run: async ({ subject: refund }) => ({
+    orderId: refund.orderId,
+    paymentId: refund.paymentIntent,
+    amount: money(refund.amountMinor, refund.currency),
+    isDone: refund.state === "done",
+  }),
 });
 
 /** The refund of lines in journal, papers and licences. */
@@ -158,6 +155,25 @@ async function takeBack(
   };
 }
 
+/** The refund of a payment that got no licence. */
+async function giveBack(
+  tx: Tx,
+  args: { order: OrderRow; refund: RefundRow; processorRefund: string | null; now: Date; actor: Actor },
+) {
+  const { order, refund, processorRefund, now, actor } = args;
+  await postReturnedPayment(tx, {
+    orderId: order.id,
+    paymentId: refund.paymentIntent,
+    currency: refund.currency,
+    grossMinor: refund.amountMinor,
+    refundId: processorRefund,
+    eventAt: now,
+    now,
+    actor,
+  });
+  return { creditNoteNumber: null, licences: [] };
+}
+
 /** The processor has given the money back. */
 export const completeRefund = command({
   name: "licensing.completeRefund",
@@ -179,10 +195,11 @@ export const completeRefund = command({
     const done =
       refund.lineIds.length > 0
         ? await takeBack(tx, { order, refund, processorRefund: input.processorRefund, now, actor })
-        : { creditNoteNumber: null, licences: [] };
+        : await giveBack(tx, { order, refund, processorRefund: input.processorRefund, now, actor });
     await mailRefund(tx, {
       order,
       amountMinor: refund.amountMinor,
+      currency: refund.currency,
       refundedAt: now,
       reason: refund.words,
       ...done,
@@ -229,6 +246,7 @@ export const recordOutsideRefund = command({
       order,
       lineIds: lines.map(({ id }) => id),
       amountMinor: extra,
+      currency: order.currency,
       paymentId: input.paymentId,
       words: "Refunded at the payment processor.",
       askedBy: null,

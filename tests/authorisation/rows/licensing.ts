@@ -89,6 +89,7 @@ async function refundOf(world: World): Promise<string> {
     orderId,
     lineIds: [],
     amountMinor: 28_800n,
+    currency: "GBP",
     words: "Made by a test.",
     state: "asked",
     paymentIntent: "pi_test",
