@@ -8,6 +8,7 @@ import { QueryProvider } from "@/components/lists/query-provider";
 import { PlayerProvider } from "@/components/player/player-provider";
 import { Footer } from "@/components/shell/footer";
 import { Header, SkipLink } from "@/components/shell/header";
+import { HeadingFocus } from "@/components/shell/heading-focus";
 import { FOOTER_LINKS, navFor } from "@/components/shell/nav";
 import { fmt } from "@/components/ui/format";
 import { UiProvider } from "@/components/ui/ui-provider";
@@ -38,6 +39,7 @@ export default async function RootLayout({ children }: { children: ReactNode }) 
             <QueryProvider>
               <PlayerProvider>
                 <SkipLink />
+                <HeadingFocus />
                 <Header
                   items={navFor(who.actor.kind, isMarketplace(who.actor))}
                   person={signedIn(who)}
