@@ -106,7 +106,7 @@ function HitEvidence({ view, group, hit, number, onNumber }: HitEvidenceProps) {
         ending: endingOf(recording.ending),
         words: (
           <>
-            A <Title>{view.title}</Title>, {fmt.time(recording.durationS)}, from the deliverer
+            <Title>{view.title}</Title>, {fmt.time(recording.durationS)}, from the deliverer
           </>
         ),
       }}
@@ -116,7 +116,7 @@ function HitEvidence({ view, group, hit, number, onNumber }: HitEvidenceProps) {
         drawn,
         words: (
           <>
-            B {referenceName(group)}, {fmt.time(secondsB)}
+            {referenceName(group)}, {fmt.time(secondsB)}
             {group.reference.title ? `, ${group.reference.words}` : ""}
           </>
         ),
