@@ -20,7 +20,7 @@ import { firstSale } from "./first-sale";
 import { storeMaster } from "./masters";
 import { planner, planStep, priorityOf } from "./plan";
 import { familyOfCue, later } from "./turns";
-import { composerActor, type DemoWorld, demoWorld, libraryOf, ownerActor, personOf, seeding } from "./world";
+import { composerActor, type DemoWorld, demoWorld, ownerActor, personOf, seeding } from "./world";
 
 const once = (key: string) => ({ operationId: `demo:${key}`.slice(0, 120) });
 

@@ -47,7 +47,7 @@ const publisherOf = (code: string) => {
   return library ? [{ name: library.name, ipi: library.ipi, role: "E", share: "100.00" }] : [];
 };
 
-function describe(cue: CueRow): Record<string, unknown> {
+function descriptionOf(cue: CueRow): Record<string, unknown> {
   return {
     otherTitles: cue.otherTitles.map((entry) => entry.title),
     iswc: cue.iswc,
@@ -104,7 +104,7 @@ export function cueHandover(world: DemoWorld, number: number, which: "full" | "o
     deliverer: cue.writers[0]?.person ?? "A",
     library: cue.library,
     at: minutes(INTAKE[cue.library], number * 4 + (which === "full" ? 0 : 300)),
-    draft: { ...describe(cue), title: cue.title, writers, publishers: publisherOf(cue.library) },
+    draft: { ...descriptionOf(cue), title: cue.title, writers, publishers: publisherOf(cue.library) },
     files: versions.map((version) => ({
       name: `${cue.library}${String(number).padStart(4, "0")}_${cue.title.replace(/[^A-Za-z0-9]+/g, "-")}_${version.role.replace(":", "-")}.flac`,
       role: version.role,
@@ -131,7 +131,7 @@ export function caseHandover(world: DemoWorld, id: string): Handover {
     library: row.deliveredTo,
     at: minutes("2026-05-18T07:30:00Z", Number(id.slice(2))),
     draft: {
-      ...describe(like),
+      ...descriptionOf(like),
       otherTitles: [],
       iswc: null,
       sections: [],

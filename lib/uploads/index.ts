@@ -1,7 +1,6 @@
 export { UploadError, type UploadErrorReason } from "./errors";
 export { withLocalCopy } from "./local-copy";
 export { streamStored } from "./range-response";
-export { serveStored } from "./serve-stored";
 export { UPLOAD_WINDOW_H, type UploadSlug, uploadLimits, uploadSlugs } from "./states";
 export {
   type ByteRange,

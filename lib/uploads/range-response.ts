@@ -20,7 +20,7 @@ async function wantedRange(header: string | null, fileKey: string): Promise<Byte
 /** Streams a stored file through our own route, with ranges; the store's own address is never shown. */
 export async function streamStored(
   request: Request,
-  file: { fileKey: string; type: string; downloadName?: string; maxAgeS?: number },
+  file: { fileKey: string; type: string; downloadName?: string; maxAgeS?: number; etag?: string },
 ): Promise<Response> {
   try {
     const range = await wantedRange(request.headers.get("range"), file.fileKey);
@@ -36,6 +36,7 @@ export async function streamStored(
         "content-disposition",
         `attachment; filename="${file.downloadName.replace(/[^\w.-]/g, "_")}"; filename*=UTF-8''${encodeURIComponent(file.downloadName)}`,
       );
+    if (file.etag) headers.set("etag", `"${file.etag}"`);
     if (range)
       headers.set(
         "content-range",

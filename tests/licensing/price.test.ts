@@ -126,7 +126,7 @@ describe("worked prices of the invented card", () => {
     const result = price(card, { mediaClass: "MC06", territory: UK_IE, termMonths: 36 });
     expect(result.ok && result.factors).toEqual([
       { kind: "base", label: "TV or radio programme incl. catch-up", value: "150" },
-      { kind: "territory", label: "United Kingdom and Ireland", value: "1.6" },
+      { kind: "territory", label: "the United Kingdom and Ireland", value: "1.6" },
       { kind: "term", label: "3 years", value: "1.6" },
       { kind: "tier", label: "No size scale for this class", value: "1" },
       { kind: "episodes", label: "1 episode", value: "1" },

@@ -3,20 +3,16 @@ import {
   composers,
   cues,
   cueTimings,
-  episodeFactors,
-  extras,
-  type Factor,
   judgedBriefs,
   libraries,
   licences,
-  mediaClasses,
   people,
   plantedCases,
   productions,
-  termFactors,
-  territoryFactors,
   versionsOf,
 } from "@/db/seed/data";
+import { demoRateCard } from "@/db/seed/rate-cards";
+import { useOf } from "@/db/seed/uses";
 import { findVersionRole } from "@/lib/catalogue/version-roles";
 import {
   densities,
@@ -31,6 +27,8 @@ import {
   uses,
   voiceKinds,
 } from "@/lib/catalogue/vocabularies";
+import { price } from "@/lib/licensing/price";
+import { Use } from "@/lib/licensing/rate-card";
 
 function ids(list: readonly { readonly id: string }[]): Set<string> {
   return new Set(list.map((term) => term.id));
@@ -59,11 +57,6 @@ function ipiHolds(text: string): boolean {
 }
 
 /** Exact product of a base in minor units and factors, rounded half up once. */
-function price(baseMinor: number, ...factors: readonly Factor[]): number {
-  const numerator = factors.reduce((product, factor) => product * factor.numerator, baseMinor);
-  const denominator = factors.reduce((product, factor) => product * factor.denominator, 1);
-  return Math.floor((2 * numerator + denominator) / (2 * denominator));
-}
 
 describe("the forty cues", () => {
   test("are numbered 1 to 40, with different titles and descriptions", () => {
@@ -195,25 +188,10 @@ describe("people, prices and papers", () => {
 
   test("every licence's price is the card's, from its own scope", () => {
     for (const licence of licences) {
-      const media = mediaClasses.find((row) => row.id === licence.mediaClass)!;
-      const area =
-        licence.territory === "World" ? "world" : licence.territory === "UK+IE" ? "region" : "country";
-      const territory = media.worldOnly ? { numerator: 1, denominator: 1 } : territoryFactors[area];
-      const term = termFactors.find((row) => row.id === licence.term)!.factor;
-      const tier = media.tiers.find((row) => row.id === licence.tier)?.factor ?? {
-        numerator: 1,
-        denominator: 1,
-      };
-      const episodes = media.episodes
-        ? episodeFactors.find((row) => licence.episodes <= row.upTo)!.factor
-        : { numerator: 1, denominator: 1 };
-      const flag = licence.studentOrCharity ? extras.studentOrCharity : { numerator: 1, denominator: 1 };
-      const one = price(media.baseMinor, territory, term, tier, episodes, flag);
-      const cutdowns =
-        licence.extraCutdowns * price(media.baseMinor, territory, term, tier, extras.extraCutdown);
-      expect([licence.number, Math.max(extras.minimumFeeMinor, one + cutdowns)]).toEqual([
+      const answer = price(demoRateCard(licence.currency), Use.parse(useOf(licence)));
+      expect([licence.number, answer.ok && answer.total.minor]).toEqual([
         licence.number,
-        licence.priceMinor,
+        BigInt(licence.priceMinor),
       ]);
     }
   });

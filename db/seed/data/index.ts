@@ -26,15 +26,4 @@ export {
   reporters,
 } from "./people";
 export { companies, namedRegions, productions } from "./productions";
-export {
-  alwaysQuoted,
-  episodeFactors,
-  extras,
-  type Factor,
-  type MediaClassRow,
-  mediaClasses,
-  rateCardVersion,
-  termFactors,
-  territoryFactors,
-} from "./rate-card";
 export { otherTitles, publicDomainTunes, reportedWorks, sharedMaterial } from "./registers";
