@@ -1,7 +1,7 @@
 "use client";
 
 import { CSPProvider } from "@base-ui/react/csp-provider";
-import { createContext, type ReactNode, useContext } from "react";
+import { createContext, type ReactNode, useContext, useState } from "react";
 import { Toaster } from "./toaster";
 
 const NonceContext = createContext<string | undefined>(undefined);
@@ -18,7 +18,9 @@ interface UiProviderProps {
 }
 
 /** Once, in the root layout, round everything. */
-export function UiProvider({ nonce, children }: UiProviderProps) {
+export function UiProvider({ nonce: given, children }: UiProviderProps) {
+  // The policy is that of the document: a refresh brings a newer nonce, which it would refuse.
+  const [nonce] = useState(given);
   return (
     <CSPProvider disableStyleElements={nonce === undefined} nonce={nonce}>
       <NonceContext value={nonce}>
