@@ -14,6 +14,7 @@ export interface LoopFacts {
   id: string;
   code: string;
   title: string;
+  lengthS: number;
   coverageMaxBps: number;
   conditionWords: string;
 }
@@ -109,11 +110,19 @@ function loopHolds(hit: FoundHit, loop: LoopFacts, delivery: DeliveryFacts): boo
 
 function loopExplanation(entry: { hit: FoundHit; loop: LoopFacts; holds: boolean }) {
   if (!entry.holds) return nothing;
-  const places = entry.hit.passages.length;
+  const places = placesOf(entry.hit.passages, entry.loop.lengthS);
   return {
     explainedBy: "registered loop" as const,
     explanation: `Match explained by registered loop ${entry.loop.code}, ${places} ${places === 1 ? "place" : "places"}. ${entry.loop.conditionWords}`,
   };
+}
+
+/** How often the loop plays: a passage that runs through several turns of it counts each of them. */
+function placesOf(passages: readonly FoundPassage[], lengthS: number): number {
+  return passages.reduce(
+    (total, { startS, endS }) => total + Math.max(1, Math.round((endS - startS) / lengthS)),
+    0,
+  );
 }
 
 /** Seconds of a recording that its passages cover, overlaps counted once. */

@@ -62,6 +62,7 @@ const loop = {
   id: "lop_1",
   code: "LP-003",
   title: "a groove",
+  lengthS: 20,
   coverageMaxBps: 5000,
   conditionWords: "Allowed with other musical content.",
 };
@@ -133,6 +134,19 @@ describe("what explains itself", () => {
         declared,
       )[0]?.explainedBy,
     ).toBeNull();
+  });
+
+  test("a passage that runs through several turns of a loop counts each of them as a place", () => {
+    const placesOf = (spans: [number, number][]) =>
+      explain([loopHit(spans)], { delivery: { declaredLoops: ["LP-003"], durationS: 1000 } })[0]?.explanation;
+    expect(placesOf([[10, 30]])).toContain("LP-003, 1 place.");
+    expect(placesOf([[10, 13]])).toContain("LP-003, 1 place.");
+    expect(
+      placesOf([
+        [10, 109.5],
+        [109.5, 169.6],
+      ]),
+    ).toContain("LP-003, 8 places.");
   });
 
   test("SCREENING-6: a recording that shares the loop is explained by it only as far as the loop reaches", () => {
