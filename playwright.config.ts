@@ -12,6 +12,8 @@ export default defineConfig({
     baseURL: process.env.SITE_URL ?? "http://127.0.0.1:3400",
     locale: "en-GB",
     timezoneId: "Europe/London",
+    actionTimeout: 20_000,
+    navigationTimeout: 60_000,
     launchOptions: {
       executablePath: process.env.CHROMIUM_PATH ?? "/usr/bin/chromium",
       args: [
