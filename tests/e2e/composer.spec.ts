@@ -149,7 +149,7 @@ test("delivers three files by keyboard, and has one of them put right", async ({
     await pickFiles(page, page.getByRole("button", { name: "Replace the 30" }), pathOf("30"));
     const row = versionRow(page, "steps_30.wav");
     await expect(row.getByText(/passes the checks/)).toBeVisible({ timeout: 120_000 });
-    await expect(row.getByText(/^30\.00 s, /)).toBeVisible();
+    await expect(row.getByText(/^30\.00.s, /)).toBeVisible();
     await expect(row.getByLabel("What it is")).toHaveValue("30");
     expect(await versionRow(page, "_full.wav").innerText()).toBe(full);
     await page.reload();
