@@ -109,7 +109,7 @@ describe("a licence record", () => {
     expect(record.cue.versions).toHaveLength(2);
     expect(record.shares.writers.map(({ share }) => share)).toEqual(["60.00", "40.00"]);
     expect(record.scope.territory).toMatchObject({
-      words: "United Kingdom and Ireland",
+      words: "the United Kingdom and Ireland",
       countries: ["GB", "IE"],
     });
     expect(record.scope.contextLimits).toEqual(["political advertising"]);
