@@ -43,6 +43,10 @@ export interface ExplainedHit extends FoundHit {
 }
 
 const COVERED_BY_LOOP = 0.75;
+/** Where this much of what is heard is the loop, it is the principal element; below, it stands among other music. */
+const PRINCIPAL_SHARE = 0.75;
+/** A recording that agrees by more than this against the loop shares something besides the loop. */
+const BESIDES_LOOP = 1.25;
 
 /**
  * Says what each hit looks like and whether something known explains it. A family link counts only for an accepted
@@ -87,7 +91,12 @@ export function explainHits(
     if (otherTitle) return { ...hit, relation, explainedBy: "other title", explanation: otherTitle.words };
     const loop =
       hit.subjectKind === "recording"
-        ? loopHits.find((entry) => entry.holds && liesWithin(hit.passages, entry.hit.passages))
+        ? loopHits.find(
+            (entry) =>
+              entry.holds &&
+              liesWithin(hit.passages, entry.hit.passages) &&
+              shareOf(hit.passages) <= BESIDES_LOOP * shareOf(entry.hit.passages),
+          )
         : undefined;
     if (loop) return { ...hit, relation: "shared material", ...loopExplanation(loop) };
     return { ...hit, relation, ...nothing };
@@ -101,10 +110,17 @@ const covers = (entry: OtherTitle, delivery: DeliveryFacts) =>
   (entry.personId === delivery.delivererId || delivery.writerIds.includes(entry.personId)) &&
   (entry.libraryId === null || entry.libraryId === delivery.libraryId);
 
+/** Share of what sounds in these passages that agrees with the reference. */
+function shareOf(passages: readonly FoundPassage[]): number {
+  const total = passages.reduce((sum, passage) => sum + passage.landmarksTotal, 0);
+  return total === 0 ? 0 : passages.reduce((sum, passage) => sum + passage.landmarksMatched, 0) / total;
+}
+
 function loopHolds(hit: FoundHit, loop: LoopFacts, delivery: DeliveryFacts): boolean {
+  const principal = hit.passages.filter((passage) => shareOf([passage]) >= PRINCIPAL_SHARE);
   return (
     delivery.declaredLoops.includes(loop.code) &&
-    coveredS(hit.passages) / delivery.durationS <= loop.coverageMaxBps / 10_000
+    coveredS(principal) / delivery.durationS <= loop.coverageMaxBps / 10_000
   );
 }
 

@@ -136,6 +136,32 @@ describe("what explains itself", () => {
     ).toBeNull();
   });
 
+  test("SCREENING-6: a loop counts as the principal element where it is most of what is heard, not where it accompanies", () => {
+    const under = (matched: number) =>
+      hit({
+        subjectKind: "loop",
+        subjectId: loop.id,
+        passages: [{ ...passage(0, 95), landmarksMatched: matched, landmarksTotal: 100 }],
+      });
+    const declared = { delivery: { declaredLoops: ["LP-003"] } };
+    expect(explain([under(74)], declared)[0]?.explainedBy).toBe("registered loop");
+    expect(explain([under(75)], declared)[0]?.explainedBy).toBeNull();
+    expect(explain([under(74)])[0]?.explainedBy).toBeNull();
+  });
+
+  test("SCREENING-6: a recording that agrees by more than the loop is not explained by it", () => {
+    const declared = { delivery: { declaredLoops: ["LP-003"] } };
+    const accompanying = hit({
+      subjectKind: "loop",
+      subjectId: loop.id,
+      passages: [{ ...passage(0, 95), landmarksMatched: 50, landmarksTotal: 100 }],
+    });
+    const agreeing = (matched: number) =>
+      hit({ passages: [{ ...passage(0, 95), landmarksMatched: matched, landmarksTotal: 100 }] });
+    expect(explain([accompanying, agreeing(62)], declared)[1]?.explainedBy).toBe("registered loop");
+    expect(explain([accompanying, agreeing(98)], declared)[1]?.explainedBy).toBeNull();
+  });
+
   test("a passage that runs through several turns of a loop counts each of them as a place", () => {
     const placesOf = (spans: [number, number][]) =>
       explain([loopHit(spans)], { delivery: { declaredLoops: ["LP-003"], durationS: 1000 } })[0]?.explanation;
