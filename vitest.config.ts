@@ -8,7 +8,7 @@ export default defineConfig({
     globalSetup: ["tests/support/global-setup.ts"],
     pool: "forks",
     maxWorkers: 2,
-    testTimeout: 30_000,
+    testTimeout: 120_000,
     hookTimeout: 120_000,
     env: { TZ: "UTC" },
   },
