@@ -106,8 +106,9 @@ export class PlayerEngine {
     const audio = this.audio;
     if (!audio) return;
     this.mute();
+    // Also where the track is loading already: it then begins at the newer place.
+    this.startAtS = atS;
     if (this.state.track?.id !== track.id || this.state.problem) {
-      this.startAtS = atS;
       audio.src = track.url;
       audio.addEventListener("loadedmetadata", () => this.moveTo(this.startAtS), { once: true });
       this.set({ track, problem: null });
