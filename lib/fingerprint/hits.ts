@@ -1,8 +1,9 @@
-import { type AffineMap, matchPeaks, type Span, TOLERANCES } from "./alignment";
+import { type AffineMap, matchPeaks, TOLERANCES } from "./alignment";
 import type { Fingerprint } from "./fingerprint";
 import type { Prepared } from "./prepared";
 import { evidenceNats } from "./score";
 import { FRAME_SAMPLES, framesToS, SAMPLE_RATE_HZ } from "./settings";
+import { type Stretch, shareOut } from "./stretches";
 import { type Alignment, PASSAGE_NATS_MIN } from "./verify";
 
 export type Channel = "mid" | "left" | "right";
@@ -73,9 +74,7 @@ export const SHARE_MIN: Readonly<Record<Fit, number>> = Object.freeze({
   fair: 0.16,
   loose: 0.6,
 });
-/** Of a passage already explained by a surer one, this much must be new. */
-const NEW_SHARE = 0.5;
-const NEW_MIN_S = 1.5;
+const PASSAGE_MIN_S = 1.5;
 
 export function makeHit(
   id: string,
@@ -89,14 +88,11 @@ export function makeHit(
   const ranked = [...alignments].sort((x, y) => y.evidence - x.evidence);
   const best = ranked[0];
   if (best === undefined || best.evidence < HIT_NATS_MIN) return null;
-  const passages: Passage[] = [];
-  const stretches = ranked
-    .filter((one) => one === best || standsAlone(one))
-    .flatMap((one) => stretchesOf(query, reference, one));
-  stretches.sort((x, y) => y.evidence - x.evidence);
-  for (const stretch of stretches) addPassages(passages, query, reference, stretch);
+  const believed = ranked.filter((alignment) => alignment === best || standsAlone(alignment));
+  const passages = shareOut(query, reference, believed)
+    .map((stretch) => describePassage(query, reference, stretch))
+    .filter((p) => p.evidence >= PASSAGE_NATS_MIN && p.endS - p.startS >= PASSAGE_MIN_S);
   if (passages.length === 0) return null;
-  passages.sort((x, y) => x.startS - y.startS);
   widen(passages, queryFp.durationS, referenceFp.durationS);
   const coverageQuery = share(union(passages.map((p) => [p.startS, p.endS])), queryFp.contentS);
   const coverageReference = share(union(passages.map((p) => [p.refStartS, p.refEndS])), referenceFp.contentS);
@@ -154,61 +150,20 @@ function turnRound(passage: Passage, durationS: number): Passage {
   return { ...passage, startS: durationS - passage.endS, endS: durationS - passage.startS };
 }
 
-/** One span of one alignment, with the evidence of its own peaks. */
-interface Stretch {
-  alignment: Alignment;
-  span: Span;
-  evidence: number;
-}
-
-function stretchesOf(query: Prepared, reference: Prepared, alignment: Alignment): Stretch[] {
-  return alignment.spans.map((span) => {
-    const startS = framesToS(query.timeFrames[span[0]]!);
-    const endS = framesToS(query.timeFrames[span[1] - 1]!);
-    const { evidence } = describePassage(query, reference, alignment, span, startS, endS);
-    return { alignment, span, evidence };
-  });
-}
-
-/** Adds what of a stretch no surer one has explained: the surest stretch first, whichever alignment it belongs to. */
-function addPassages(passages: Passage[], query: Prepared, reference: Prepared, stretch: Stretch): void {
-  const { alignment, span } = stretch;
-  const taken = passages.map((p): [number, number] => [p.startS, p.endS]);
-  const startS = framesToS(query.timeFrames[span[0]]!);
-  const endS = framesToS(query.timeFrames[span[1] - 1]!);
-  const rest = subtract([startS, endS], taken);
-  const restS = rest.reduce((sum, [from, to]) => sum + to - from, 0);
-  if (restS < NEW_SHARE * (endS - startS)) return;
-  for (const [from, to] of rest) {
-    if (to - from < Math.min(NEW_MIN_S, endS - startS)) continue;
-    const passage = describePassage(query, reference, alignment, span, from, to);
-    if (passage.evidence >= PASSAGE_NATS_MIN) passages.push(passage);
-  }
-}
-
-function describePassage(
-  query: Prepared,
-  reference: Prepared,
-  alignment: Alignment,
-  span: Span,
-  startS: number,
-  endS: number,
-): Passage {
-  let from = span[0];
-  let to = span[1];
-  while (from < to && framesToS(query.timeFrames[from]!) < startS) from++;
-  while (to > from && framesToS(query.timeFrames[to - 1]!) > endS) to--;
-  const matched = new Int32Array(to - from);
+function describePassage(query: Prepared, reference: Prepared, stretch: Stretch): Passage {
+  const { alignment, from, to } = stretch;
   const { map } = alignment;
+  const matched = new Int32Array(to - from);
   matchPeaks(query, reference, map, from, to, alignment.score.tolerance, matched);
   let hits = 0;
   for (const index of matched) if (index >= 0) hits++;
-  const atFrames = (s: number): number => map.a * query.timeFrames[s]! + map.b;
+  const first = query.timeFrames[from]!;
+  const last = query.timeFrames[to - 1]!;
   return {
-    startS,
-    endS,
-    refStartS: framesToS(from < to ? atFrames(from) : 0),
-    refEndS: framesToS(from < to ? atFrames(to - 1) : 0),
+    startS: framesToS(first),
+    endS: framesToS(last),
+    refStartS: framesToS(map.a * first + map.b),
+    refEndS: framesToS(map.a * last + map.b),
     speed: map.a,
     pitchSemitones: map.c === 0 ? 0 : -map.c,
     landmarksMatched: hits,
@@ -264,20 +219,6 @@ function union(spans: [number, number][]): number {
     end = to;
   }
   return total;
-}
-
-function subtract(span: [number, number], taken: [number, number][]): [number, number][] {
-  let rest: [number, number][] = [span];
-  for (const [from, to] of taken) {
-    rest = rest.flatMap(([a, b]): [number, number][] => {
-      if (to <= a || from >= b) return [[a, b]];
-      const out: [number, number][] = [];
-      if (from > a) out.push([a, from]);
-      if (to < b) out.push([to, b]);
-      return out;
-    });
-  }
-  return rest;
 }
 
 function share(partS: number, wholeS: number): number {

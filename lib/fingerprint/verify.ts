@@ -50,8 +50,7 @@ function grow(query: Prepared, reference: Prepared, start: AffineMap, startScore
   let score = startScore;
   let spans: Span[] = [];
   for (let round = 0; round < GROWTH_ROUNDS; round++) {
-    const rate = Math.max(RATE_MIN, Math.min(RATE_MAX, RATE_SHARE * (score.hits / score.trials)));
-    const chance = Math.min(score.chance, rate / 2);
+    const { rate, chance } = expectedRates(score);
     const found = matchingSpans(query, reference, map, rate, chance, PASSAGE_NATS_MIN, score.tolerance);
     if (found.length === 0) return null;
     const next = refine(query, reference, map, found, 2);
@@ -71,6 +70,12 @@ function grow(query: Prepared, reference: Prepared, start: AffineMap, startScore
     evidence: evidenceNats(score.hits, score.trials, score.chance),
     evidence2: evidenceNats(score.hits, score.trials, score.chanceHigh),
   };
+}
+
+/** The rates of coincidence by which a passage is told from its surroundings. */
+export function expectedRates(score: Score): { rate: number; chance: number } {
+  const rate = Math.max(RATE_MIN, Math.min(RATE_MAX, RATE_SHARE * (score.hits / score.trials)));
+  return { rate, chance: Math.min(score.chance, rate / 2) };
 }
 
 function sameSpans(one: Span[], other: Span[]): boolean {

@@ -157,6 +157,27 @@ describe("parts", () => {
     });
   });
 
+  it("cut within repeated bars show one jump: the bars go with the side that explains them, not with an equal one", () => {
+    const bar = slice(render(composeScore(400, 10)), 4, 5.6);
+    const bars = join(bar, bar, bar, bar);
+    const piece = join(
+      slice(sounds[8]!, 10, 18),
+      bars,
+      slice(sounds[9]!, 10, 18),
+      bars,
+      slice(sounds[10]!, 10, 18),
+    );
+    const cut = join(slice(piece, 0, 14.4), slice(piece, 28.8, 36.8));
+    const hit = matchFingerprints(fingerprint(cut), fingerprint(piece), { altered: true });
+    expect(hit!.passages).toHaveLength(2);
+    const [before, after] = hit!.passages;
+    expect(Math.abs(before!.refStartS - before!.startS)).toBeLessThan(0.05);
+    expect(Math.abs(after!.refStartS - after!.startS - 14.4)).toBeLessThan(0.05);
+    expect(after!.startS).toBeGreaterThan(7.5);
+    expect(after!.startS - before!.endS).toBeLessThan(1);
+    expect(hit!.coverageQuery).toBeGreaterThan(0.92);
+  });
+
   it("altered and embedded are found", () => {
     const part = slice(render(scores[7]!, { tempo: 0.9, pitchSemitones: -1 }), 20, 32);
     const hit = only(join(slice(sounds[8]!, 0, 24), part, slice(sounds[8]!, 36, 60)));

@@ -33,7 +33,7 @@ describe("common practice", () => {
         expect(Math.abs(best!.passages[0]!.refStartS - best!.passages[0]!.startS - fromS)).toBeLessThan(0.05);
       }
     }
-  });
+  }, 120_000);
 
   it("a landmark's hash fits 32 bits: 22 are used (common practice, no source)", () => {
     for (const fp of fingerprints) {
