@@ -1,7 +1,7 @@
 import { execFileSync } from "node:child_process";
 import { readFileSync } from "node:fs";
 import type { Page } from "@playwright/test";
-import { expect, mailTo, PAYMENTS_URL, PEOPLE, test } from "./support";
+import { expect, expectAccessible, mailTo, PAYMENTS_URL, PEOPLE, test } from "./support";
 
 /** A supervisor finds, shortlists and proposes; the approver of her company pays; both hold the record. */
 test.describe.configure({ mode: "serial" });
@@ -63,7 +63,7 @@ test("each further word narrows the list, is read out, and can be taken back", a
     .locator("p[aria-live=polite]")
     .filter({ hasText: /on sale/ });
   const fitting = async (): Promise<number> => {
-    const words = await said.innerText();
+    const words = (await said.textContent()) ?? "";
     const [first = ""] = words.split(/\s/);
     const named = [
       "none",
@@ -85,8 +85,8 @@ test("each further word narrows the list, is read out, and can be taken back", a
   };
   const all = await fitting();
   expect(all).toBeGreaterThanOrEqual(10);
-  await pick(page, "Voice", /^(without|with no|no) (a )?voice/);
-  await expect(choice(page, "Voice")).toHaveAccessibleName(/no voice|without (a )?voice/);
+  await pick(page, "Voice", "no voice");
+  await expect(choice(page, "Voice")).toHaveAccessibleName(/no voice/);
   await expect.poll(fitting).toBeLessThan(all);
   const withoutVoice = await fitting();
 
@@ -101,9 +101,9 @@ test("each further word narrows the list, is read out, and can be taken back", a
   const slow = await fitting();
   expect(slow).toBeGreaterThan(0);
 
-  await pick(page, "Rights", /United Kingdom and Ireland|UK and Ireland/);
-  await expect(choice(page, "Rights")).toHaveAccessibleName(/one-stop/i);
-  await pick(page, "Versions", "bed");
+  await pick(page, "Rights", "the UK and Ireland");
+  await expect(choice(page, "Rights")).toHaveAccessibleName(/one-stop for the UK and Ireland/);
+  await pick(page, "Versions", "a bed");
   await expect(choice(page, "Versions")).toHaveAccessibleName(/bed/);
   await expect.poll(fitting).toBeLessThanOrEqual(slow);
   await page.reload();
@@ -117,7 +117,7 @@ test("each further word narrows the list, is read out, and can be taken back", a
 
 test("plays from where a cue opens, skips by keys, one player, and keeps the level", async ({ open }) => {
   const page = await open("noor");
-  await page.goto("/find");
+  await page.goto("/find?say=fragile%20piano");
   const audio = page.locator("audio");
   await expect(audio).toHaveCount(1);
   const isPaused = () => audio.evaluate((element: HTMLAudioElement) => element.paused);
@@ -127,9 +127,10 @@ test("plays from where a cue opens, skips by keys, one player, and keeps the lev
   await strip.focus();
   await page.keyboard.press("Enter");
   await expect.poll(isPaused).toBe(false);
+  if (process.env.LAG) await expect.poll(positionS).toBeGreaterThan(0);
   await page.getByRole("button", { name: /^Hear it from \d:\d\d, where it opens$/ }).click();
   const opens = /from (\d):(\d\d)/.exec(
-    await page.getByRole("button", { name: /^Hear it from/ }).innerText(),
+    (await page.getByRole("button", { name: /^Hear it from/ }).textContent()) ?? "",
   );
   const opensS = Number(opens?.[1]) * 60 + Number(opens?.[2]);
   await expect.poll(positionS).toBeGreaterThan(opensS - 1);
@@ -183,13 +184,14 @@ test("a shortlist of eight with notes and versions keeps its prices until a stat
   const titles: string[] = [];
   for (let index = 0; index < 7; index += 1) {
     const row = results(page).nth(index);
-    titles.push(await row.getByRole("link").first().innerText());
+    titles.push((await row.getByRole("link").first().textContent()) ?? "");
     await row.getByRole("button", { name: "Shortlist it" }).click();
     await expect(row.getByRole("button", { name: "On the shortlist" })).toBeVisible();
   }
   const other = await results(page).nth(8).getByRole("link").first().getAttribute("href");
   await page.goto(`${other}?production=${production}`);
-  titles.push((await page.getByRole("heading", { level: 1 }).innerText()).split(", by ")[0] ?? "");
+  const heading = (await page.getByRole("heading", { level: 1 }).textContent()) ?? "";
+  titles.push(heading.split(", by ")[0] ?? "");
   await page.getByLabel("Version").selectOption({ index: 0 });
   await page.getByLabel("Note").fill("under the last interview");
   await page.getByRole("button", { name: "Put it on the shortlist" }).click();
@@ -200,6 +202,7 @@ test("a shortlist of eight with notes and versions keeps its prices until a stat
   const list = page.getByRole("complementary");
   for (const title of titles) await expect(list.getByRole("link", { name: title })).toBeVisible();
   await expect(list.getByText(/“under the last interview”/)).toBeVisible();
+  await expectAccessible(page);
   await expect(list.getByText(/^Prices of .+, kept until .+, before tax\./)).toBeVisible();
   const entry = list.getByRole("listitem").filter({ has: page.getByRole("link", { name: titles[0] ?? "" }) });
   await entry.getByRole("button", { name: "Note and version" }).click();
@@ -212,7 +215,7 @@ test("a shortlist of eight with notes and versions keeps its prices until a stat
 
 test("cue 36 for the episode: every factor is shown, 150 × 1.6 × 1.6 = 384.00 EUR", async ({ open }) => {
   const page = await open("noor");
-  await page.goto("/find");
+  await page.goto("/find?library=OA");
   const href = await results(page).getByRole("link", { name: "Winter Timetable" }).getAttribute("href");
   await page.goto(`${href}/license?production=${production}`);
   // The rate card is invented; the arithmetic is that of its factors.
@@ -264,6 +267,7 @@ test("the approver accepts the terms with authority, pays, and the record and th
   await page.getByRole("button", { name: /^Accept and pay €/ }).click();
   await expect(page.getByText(/Tick the sentence about your authority first/)).toBeVisible();
   await page.getByText(/^Read the terms in full, version/).click();
+  await expectAccessible(page);
   await page.getByRole("checkbox").check();
   await page.getByRole("button", { name: /^Accept and pay €/ }).click();
   await page.waitForURL((url) => url.origin === new URL(PAYMENTS_URL).origin);
@@ -301,6 +305,7 @@ test("the record says what it allows and does not, as page, PDF and signed JSON;
   );
   const main = page.getByRole("main");
   await expect(main.getByRole("heading", { name: "What it allows" })).toBeVisible();
+  await expectAccessible(page);
   await expect(main).toContainText(/[Pp]ublic performance/);
   await expect(main).toContainText(/[Cc]ue sheet/);
   await expect(main).toContainText("T-999.000.036-7");

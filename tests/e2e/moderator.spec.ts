@@ -1,5 +1,5 @@
 import type { Page } from "@playwright/test";
-import { expect, mailTo, type Person, press, tabTo, test, type } from "./support";
+import { expect, expectAccessible, mailTo, type Person, press, tabTo, test, type } from "./support";
 
 /** P-01 from the queue to the letter: Ingrid steps back, Ruan decides, Solveig of the marketplace confirms. */
 test.describe.configure({ mode: "serial" });
@@ -22,7 +22,7 @@ async function inSeconds(page: Page, column: "in A" | "in B"): Promise<{ from: n
   const table = page.getByRole("table", { name: "Passages" });
   const heads = await table.getByRole("columnheader").allTextContents();
   const cell = table.getByRole("row").nth(1).getByRole("cell").nth(heads.indexOf(column));
-  const [from = 0, to = 0] = (await cell.innerText()).split("–").map((time) => {
+  const [from = 0, to = 0] = ((await cell.textContent()) ?? "").split("–").map((time) => {
     const [minutes = "0", seconds = "0"] = time.split(":");
     return Number(minutes) * 60 + Number(seconds);
   });
@@ -72,12 +72,12 @@ test("the measured facts come before the names, and the times are there as a tab
   await expect(row).toContainText("1.000");
   await expect(row).toContainText("0.00");
   const together = /Together (\d+).% of A and (\d+).% of B/.exec(
-    await page.getByText(/^Together/).innerText(),
+    (await page.getByText(/^Together/).textContent()) ?? "",
   );
   expect(Number(together?.[1])).toBeGreaterThanOrEqual(97);
   expect(Number(together?.[2])).toBeGreaterThanOrEqual(97);
   const residual = /What differs is (\d+).dB below A/.exec(
-    await page.getByText(/What differs is/).innerText(),
+    (await page.getByText(/What differs is/).textContent()) ?? "",
   );
   expect(Number(residual?.[1])).toBeGreaterThanOrEqual(15);
   await expect(page.getByText(/It is not a finding of infringement or of originality/)).toBeVisible();
@@ -157,6 +157,7 @@ test("a refusal needs two sentences, a code and a second person", async ({ open 
   await press(page, find);
   await expect(aside.getByText(/sentences/).first()).toBeVisible();
   await expect(page.getByText(/waits for a second person/)).toHaveCount(0);
+  await expectAccessible(page);
 
   await type(page, aside.getByLabel("Your reasons, as the deliverer will read them"), "It is the same.");
   await press(page, find);

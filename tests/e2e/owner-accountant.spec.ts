@@ -26,7 +26,7 @@ test("the owner opens the payout of 31 March: 196.73 is 151.73 and 45.00 recoupe
   await page.goto("/payouts");
   await page.getByRole("main").getByRole("link", { name: "Saltmarrow Music Library" }).first().click();
   await expect(page.getByRole("heading", { level: 1 })).toHaveText(
-    /^£196\.73 was paid to Saltmarrow Music Library on 31 March 2026\.$/,
+    /^£196\.73 was paid to Saltmarrow Music Library on 31.March.2026\.$/,
   );
   const main = page.getByRole("main");
   for (const amount of ["99.77", "51.96", "45.00"])
@@ -57,7 +57,7 @@ test.describe("the accountant, in the marketplace's role", () => {
     await useRole(page, "accountant for the marketplace");
     await page.goto("/journal/2026-03");
     await expect(page.getByRole("heading", { level: 1 })).toContainText(
-      /posted in March 2026; each balances/,
+      /posted in March.2026; each balances/,
     );
     const tables = page.getByRole("main").getByRole("table");
     const entries = await tables.evaluateAll((all) =>
@@ -113,7 +113,7 @@ test.describe("the accountant, in the marketplace's role", () => {
     await page.getByLabel("Instant").fill("2026-03-31T23:59:59");
     await page.getByRole("button", { name: "Show that instant" }).click();
     await expect(page.getByRole("heading", { level: 1 })).toHaveText(
-      /^Debits and credits are equal at 31 March 2026, 23:59:59.UTC\.$/,
+      /^Debits and credits are equal at 31.March.2026, 23:59:59.UTC\.$/,
     );
     const table = page.getByRole("table", { name: "Accounts in GBP" });
     for (const [account, amount] of [

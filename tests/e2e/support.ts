@@ -30,6 +30,7 @@ export const PEOPLE = {
   noor: "noor@thistlemoth.example",
   tobias: "tobias@thistlemoth.example",
   beatrix: "beatrix@thistlemoth.example",
+  ysolde: "ysolde@quillbeck.example",
 } as const;
 export type Person = keyof typeof PEOPLE;
 
@@ -147,7 +148,7 @@ interface Fixtures {
 export const test = base.extend<Fixtures>({
   guard: async ({ baseURL }, use) => {
     const guard = new Guard(baseURL ?? "");
-    if (process.env.LAG) guard.allowError(/style-src-elem/);
+    if (process.env.LAG) guard.allowError(/style-src-elem|favicon/);
     await use(guard);
     expect(guard.faults, "no console error, no request off the site").toEqual([]);
   },
@@ -198,6 +199,11 @@ export async function axeViolations(page: Page): Promise<string[]> {
     ({ id, help, nodes }) =>
       `${id}: ${help}\n${nodes.map((node) => `  ${JSON.stringify(node.target)} ${node.failureSummary ?? ""}`).join("\n")}`,
   );
+}
+
+/** In a state that a journey brought the page to; the states at rest are accessibility.spec.ts's. */
+export async function expectAccessible(page: Page): Promise<void> {
+  expect(await axeViolations(page), page.url()).toEqual([]);
 }
 
 /** Pixels by which the page is wider than its window. */
