@@ -91,7 +91,7 @@ function HitEvidence({ view, group, hit, number, onNumber }: HitEvidenceProps) {
   const drawn = hit.reference?.wholeIsDrawn
     ? undefined
     : hit.passages.map((passage) => ({ fromS: Math.max(0, passage.refStartS), toS: passage.refEndS }));
-  const render = selected.listening as {
+  const render = (view.youDeclaredConflict ? null : selected.listening) as {
     startA?: number;
     durationS?: number;
     method?: string;
@@ -161,7 +161,9 @@ function HitEvidence({ view, group, hit, number, onNumber }: HitEvidenceProps) {
         <>
           {chart(false)}
           <Sentence className="mt-3" soft>
-            {listeningWords(selected.listeningState, hit.reversed)}
+            {view.youDeclaredConflict
+              ? "You declared a conflict of interest, so the recordings are not played to you."
+              : listeningWords(selected.listeningState, hit.reversed)}
           </Sentence>
         </>
       )}
