@@ -1,10 +1,12 @@
-import { type Channel, type Fit, type Hit, SHARE_MIN } from "./hits";
+import { type Channel, type Fit, type Hit, isAltered, SHARE_MIN } from "./hits";
 
 export interface Thresholds {
-  /** Nats of LLR and LLR2 from which a hit is held… */
+  /** Nats of LLR and LLR2 from which a hit is held. */
   holdEvidence: number;
   holdEvidence2: number;
-  /** …if this share of landmarks coincides: the looser the fit, the more. Copies, however altered, fit close or fair on real
+  /** An altered copy needs more: with speed and pitch free, far more places were tried. */
+  holdEvidenceAltered: number;
+  /** Share of landmarks that must coincide: the looser the fit, the more. Copies, however altered, fit close or fair on real
    *  music; another take of the same notes, or the same pattern by the same sampler, fits loosely. */
   holdShare: Readonly<Record<Fit, number>>;
   /** The share needed where the reference agrees with itself almost as well elsewhere. */
@@ -18,6 +20,7 @@ export interface Thresholds {
 export const DEFAULT_THRESHOLDS: Readonly<Thresholds> = Object.freeze({
   holdEvidence: 100,
   holdEvidence2: 50,
+  holdEvidenceAltered: 150,
   holdShare: SHARE_MIN,
   holdShareIndistinct: 0.5,
   weakEvidence: 50,
@@ -30,7 +33,7 @@ export function band(hit: Hit, thresholds: Readonly<Thresholds> = DEFAULT_THRESH
   const { evidence, evidence2, matchedShare, fit } = hit;
   const indistinctMin = hit.lowDistinctiveness ? thresholds.holdShareIndistinct : 0;
   if (
-    evidence >= thresholds.holdEvidence &&
+    evidence >= (isAltered(hit) ? thresholds.holdEvidenceAltered : thresholds.holdEvidence) &&
     evidence2 >= thresholds.holdEvidence2 &&
     matchedShare >= Math.max(indistinctMin, thresholds.holdShare[fit])
   ) {

@@ -172,13 +172,17 @@ function describePassage(query: Prepared, reference: Prepared, stretch: Stretch)
   };
 }
 
+export function isAltered({ speed, pitchSemitones }: Pick<Hit, "speed" | "pitchSemitones">): boolean {
+  return Math.abs(speed - 1) > SAME_SPEED || Math.abs(pitchSemitones) > SAME_PITCH_SEMITONES;
+}
+
 function hint(
   passages: Passage[],
   map: AffineMap,
   coverageQuery: number,
   coverageReference: number,
 ): RelationHint {
-  const altered = Math.abs(map.a - 1) > SAME_SPEED || Math.abs(map.c) > SAME_PITCH_SEMITONES;
+  const altered = isAltered({ speed: map.a, pitchSemitones: -map.c });
   if (coverageQuery >= WHOLE && coverageReference >= WHOLE) {
     const edited = passages.some(
       (passage) => Math.abs(offsetS(passage) - offsetS(passages[0]!)) > EDIT_MIN_S,

@@ -91,6 +91,7 @@ describe("common practice", () => {
     const never = {
       holdEvidence: 1e9,
       holdEvidence2: 0,
+      holdEvidenceAltered: 1e9,
       holdShare: { close: 0, fair: 0, loose: 0 },
       holdShareIndistinct: 0,
       weakEvidence: 1e9,
