@@ -110,7 +110,7 @@ test.describe("the accountant, in the marketplace's role", () => {
     await page.goto("/payouts");
     await useRole(page, "accountant for the marketplace");
     await page.goto("/trial-balance");
-    await page.getByLabel("Instant").fill("2026-03-31T23:59:59");
+    await page.getByLabel("Instant", { exact: true }).fill("2026-03-31T23:59:59");
     await page.getByRole("button", { name: "Show that instant" }).click();
     await expect(page.getByRole("heading", { level: 1 })).toHaveText(
       /^Debits and credits are equal at 31.March.2026, 23:59:59.UTC\.$/,

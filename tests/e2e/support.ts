@@ -148,7 +148,6 @@ interface Fixtures {
 export const test = base.extend<Fixtures>({
   guard: async ({ baseURL }, use) => {
     const guard = new Guard(baseURL ?? "");
-    if (process.env.LAG) guard.allowError(/style-src-elem|favicon/);
     await use(guard);
     expect(guard.faults, "no console error, no request off the site").toEqual([]);
   },
