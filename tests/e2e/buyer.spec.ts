@@ -60,7 +60,7 @@ test("a cue whose rights are in question keeps its page, says since when, and ca
 }) => {
   const morag = await open("morag");
   await morag.goto("/deliveries");
-  await morag.getByRole("main").getByRole("link", { name: "Harbour Lights Going Out" }).click();
+  await morag.getByRole("main").getByRole("link", { name: "Harbour Lights Going Out" }).last().click();
   const number = await morag
     .getByRole("main")
     .getByRole("link", { name: /^SM\d{4}$/ })
