@@ -46,7 +46,7 @@ export const tryListing = command({
     });
     for (const recordingId of listed) {
       await enqueue(tx, "catalogue.renderPreview", { recordingId }, { key: recordingId, priority: 25 });
-      await enqueue(tx, "catalogue.renderMaster", { recordingId }, { key: recordingId, priority: 60 });
+      await enqueue(tx, "catalogue.renderMaster", { recordingId }, { key: recordingId, priority: 28 });
     }
     await tell(tx, {
       deliveryId: subject.id,
