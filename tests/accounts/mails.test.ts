@@ -18,7 +18,7 @@ describe("what this room puts into the outbox can be rendered", () => {
   test("a link to sign in", async () => {
     await requestSignInLink(ANONYMOUS, { email: "render@test.example", address: "192.0.2.150" });
     expect((await renderedFor("render@test.example")).text).toContain(
-      "http://127.0.0.1:3400/sign-in/link?token=",
+      `${process.env.SITE_URL}/sign-in/link?token=`,
     );
   });
 
