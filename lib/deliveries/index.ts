@@ -5,6 +5,7 @@ export { askWriterAgain, handInAgain } from "./ask-again";
 export { admitUpload, fileArrived, removeVersion, saveDraft, setVersion, startDelivery } from "./draft";
 export { acceptEditorial, returnEditorial } from "./editorial";
 export { guessRole } from "./guess-role";
+export { lockOwnDelivery } from "./own-delivery";
 export { paperArrived, paperOfDelivery, readPaper } from "./papers";
 export {
   type DeliverySummary,

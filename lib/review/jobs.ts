@@ -8,8 +8,9 @@ const actor = system("review");
 export const reviewHandlers = defineHandlers({
   "review.openCase": {
     timeoutS: 60,
-    handle: async ({ deliveryId, familyId }) => {
-      await openCase(actor, { deliveryId, familyId });
+    handle: async ({ deliveryId, familyId }, { jobId }) => {
+      // Two cases opened at once count to the same number: the operation's id has the later one counted again.
+      await openCase(actor, { deliveryId, familyId }, { operationId: `case:${jobId}` });
     },
   },
   "review.renderListening": {

@@ -4,7 +4,7 @@ import type { Tx } from "@/db/client";
 import { caseGroups, cases } from "@/db/schema/review";
 import { peopleWithRole } from "@/lib/accounts";
 import { recordingsOfFamily } from "@/lib/catalogue";
-import { deliveryOfFamily } from "@/lib/deliveries";
+import { deliveryOfFamily, lockOwnDelivery } from "@/lib/deliveries";
 import { enqueue } from "@/lib/jobs";
 import { addBusinessDays, civilDateIn, endOfDay } from "@/lib/kernel/calendar";
 import { NotFound } from "@/lib/kernel/errors";
@@ -22,6 +22,7 @@ export const openCase = command({
   name: "review.openCase",
   who: ["system"],
   input: z.object({ deliveryId: z.string(), familyId: z.string() }),
+  guard: async ({ tx, actor, input }) => void (await lockOwnDelivery(tx, actor, input.deliveryId)),
   authorise: async ({ tx, input }) => {
     const delivery = await deliveryOfFamily(tx, input.familyId, input.deliveryId);
     if (!delivery) throw new NotFound();

@@ -24,7 +24,7 @@ import { certificateBody } from "./certificate";
 import { screeningEngine } from "./engine/engine";
 import type { ReferenceRow } from "./engine/thread";
 import { type ExplainedHit, explainHits, type LoopFacts, outcomeOf, type ReferenceFacts } from "./explain";
-import { takeSequence, writeIndexLog } from "./fingerprints";
+import { lockHead, takeSequence, writeIndexLog } from "./fingerprints";
 import { FoundHit } from "./found";
 import type { Channel, SubjectKind } from "./states";
 
@@ -53,6 +53,7 @@ export const admitRecording = command({
   name: "screening.admitRecording",
   who: ["system"],
   input: AdmitRecording,
+  guard: async ({ tx }) => void (await lockHead(tx)),
   authorise: async ({ tx, input }) => {
     const seq = await takeSequence(tx);
     const [request] = await tx

@@ -68,15 +68,20 @@ export const storeFingerprints = command({
   }),
 });
 
-/** Locks and raises the head, and writes the log row that belongs to the new number. The first read of its transaction. */
-export async function takeSequence(tx: Tx): Promise<number> {
+/** The first read of every admission. Whoever goes on to write also raises it, by `takeSequence`. */
+export async function lockHead(tx: Tx): Promise<number> {
   const [head] = await tx
     .select({ seq: indexHead.seq })
     .from(indexHead)
     .where(eq(indexHead.name, "index"))
     .for("update");
   assert(head, "the index has no head row");
-  const seq = head.seq + 1;
+  return head.seq;
+}
+
+/** Locks and raises the head; the caller writes the log row that belongs to the new number. */
+export async function takeSequence(tx: Tx): Promise<number> {
+  const seq = (await lockHead(tx)) + 1;
   await tx.update(indexHead).set({ seq }).where(eq(indexHead.name, "index"));
   return seq;
 }

@@ -1,7 +1,7 @@
 import { z } from "zod";
 import { NotFound } from "@/lib/kernel/errors";
 import { command } from "@/lib/kernel/verb";
-import { takeSequence, writeIndexLog } from "./fingerprints";
+import { lockHead, takeSequence, writeIndexLog } from "./fingerprints";
 import { SUBJECT_KINDS } from "./states";
 
 /**
@@ -16,6 +16,7 @@ export const changeReference = command({
     subjectKind: z.enum(SUBJECT_KINDS),
     subjectId: z.string(),
   }),
+  guard: async ({ tx }) => void (await lockHead(tx)),
   authorise: async ({ tx, input }) => {
     if (input.subjectKind === "recording" && input.change === "add")
       throw new NotFound("A recording enters the index only by being screened.");

@@ -38,8 +38,8 @@ export const screeningHandlers = defineHandlers({
   "screening.screen": {
     heavy: true,
     timeoutS: 3600,
-    handle: async ({ recordingId }, { progress }) => {
-      await screenRecording(recordingId, progress);
+    handle: async ({ recordingId }, { jobId, progress }) => {
+      await screenRecording(recordingId, jobId, progress);
     },
   },
   "screening.fingerprintLoop": {

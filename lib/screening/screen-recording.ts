@@ -45,10 +45,12 @@ export type ScreenProgress = (words: string, done: number, of: number) => void;
 
 /**
  * Screens one recording: fingerprint it, search the index as it stands, then admit it under the head row, where only
- * what was admitted meanwhile is compared again. Safe to repeat at any point.
+ * what was admitted meanwhile is compared again. Safe to repeat at any point: a job whose worker died after the admission
+ * finds it done, and makes neither a second run nor a second number.
  */
 export async function screenRecording(
   recordingId: string,
+  jobId: string,
   progress: ScreenProgress,
 ): Promise<{ runId: string }> {
   const startedAt = businessNow();
@@ -65,22 +67,26 @@ export async function screenRecording(
     rows: fingerprinted.rows,
   });
   const rows = fingerprinted.rows.map((row) => ({ channel: row.channel, packed: row.packed }));
-  for (;;) {
+  for (let turn = 0; ; turn++) {
     const index = await engine.catchUp();
     progress("searching", 0, index.recordings);
     const found = await engine.search({ query: rows, exclude: [`recording:${recordingId}`] }, (done, of) =>
       progress("searching", Math.round((done / Math.max(1, of)) * index.recordings), index.recordings),
     );
-    const admitted = await admitRecording(actor, {
-      recordingId,
-      engineVersion: fingerprinted.engineVersion,
-      seqSearched: index.seq,
-      recordingsCompared: index.recordings,
-      hoursCompared: index.hours,
-      thresholds: { ...DEFAULT_THRESHOLDS },
-      found,
-      startedAt,
-    });
+    const admitted = await admitRecording(
+      actor,
+      {
+        recordingId,
+        engineVersion: fingerprinted.engineVersion,
+        seqSearched: index.seq,
+        recordingsCompared: index.recordings,
+        hoursCompared: index.hours,
+        thresholds: { ...DEFAULT_THRESHOLDS },
+        found,
+        startedAt,
+      },
+      { operationId: `screened:${jobId}:${turn}` },
+    );
     if (admitted !== AGAIN) return admitted;
   }
 }
