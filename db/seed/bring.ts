@@ -194,7 +194,7 @@ export async function seeThrough(item: string, deliveryId: string, turn: number)
   const isGoingToList =
     handover.accept &&
     view.state === "delivered" &&
-    !view.versions.some((version) => version.state === "held");
+    !view.versions.some((version) => version.state === "held" || version.state === "returned");
   if (isWorking || isGoingToList) await again();
 }
 
