@@ -130,7 +130,8 @@ async function openScreen(page: Page, { path, follow = [] }: Screen): Promise<vo
   await page.goto(path);
   for (const name of follow) {
     const before = page.url();
-    await page.getByRole("main").getByRole("link", { name }).first().click();
+    const screen = page.getByRole("main").or(page.getByRole("complementary"));
+    await screen.getByRole("link", { name }).first().click();
     await page.waitForURL((url) => url.href !== before);
   }
 }
