@@ -2,11 +2,11 @@ import { createHash } from "node:crypto";
 import { existsSync, readdirSync, readFileSync } from "node:fs";
 import { fileURLToPath } from "node:url";
 import mysql from "mysql2/promise";
-import { afterAll } from "vitest";
+import { afterAll, expect } from "vitest";
 import { closeDb } from "@/db/client";
 
 /*
- * Import this file first in a test that needs the database: the test process then has one of its own, built from the
+ * Import this file first in a test that needs the database: the test file then has one of its own, built from the
  * migrations, with the product's own user (no DDL, append-only tables). Rows are kept between the tests of a file, so
  * every test makes its own with tests/support/make.ts.
  */
@@ -42,7 +42,11 @@ function statements(): string[] {
 async function prepare(): Promise<string> {
   const url = adminUrl();
   const sql = statements();
-  const hash = createHash("sha256").update(sql.join(";")).digest("hex").slice(0, 8);
+  const file = expect.getState().testPath ?? "";
+  const hash = createHash("sha256")
+    .update(`${file};${sql.join(";")}`)
+    .digest("hex")
+    .slice(0, 12);
   const name = `sedgewren_test_${process.ppid}_${process.env.VITEST_POOL_ID ?? "0"}_${hash}`;
   const admin = await mysql.createConnection({ uri: url.href, multipleStatements: false });
   try {
