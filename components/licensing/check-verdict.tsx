@@ -63,7 +63,7 @@ export function CheckVerdict({ checked }: { checked: Checked }) {
 /** Any other day, in the licence's own time zone. */
 export function AskAboutDay({ date, zone }: { date: string; zone: string }) {
   return (
-    <form className="mt-3 flex flex-wrap items-end gap-x-4 gap-y-2" method="get">
+    <form className="mt-3 flex flex-wrap items-end gap-x-4 gap-y-2 print:hidden" method="get">
       <TextField className="w-56" defaultValue={date} label="Ask about another day" name="on" type="date" />
       <Button type="submit">Ask about this day</Button>
       <p className="pb-2 text-small text-ink-soft">Days begin and end in {zone.replaceAll("_", " ")}.</p>

@@ -99,12 +99,6 @@ const SCREENS: readonly Screen[] = [
     follow: [/^LR-2026-0101/, /^The order it came from/],
     heading: /order O-1041/,
   },
-  {
-    person: "ysolde",
-    path: "/records",
-    follow: [/^LR-2026-0101/, /^The order it came from/, /^Invoice /],
-    heading: /./,
-  },
   // a library's accountant
   { person: "desmond", path: "/sales", heading: /./ },
   { person: "desmond", path: "/payouts", heading: /./ },
