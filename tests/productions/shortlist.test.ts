@@ -54,13 +54,13 @@ describe("a production", () => {
     expect(page).toMatchObject({ title: "Tide Tables", episode: "episode 4", client: null });
     expect(page.shortlist[0]).toMatchObject({ addedBy: tobias.name, state: "considering" });
     for (const attempt of [
-      getProduction(stranger, { productionId }),
-      addToShortlist(stranger, { productionId, recordingId: recording(2) }),
-      setProductionUse(stranger, { productionId, use: null }),
-      setShortlistItem(stranger, { itemId, note: "mine" }),
-      removeFromShortlist(stranger, { itemId }),
+      () => getProduction(stranger, { productionId }),
+      () => addToShortlist(stranger, { productionId, recordingId: recording(2) }),
+      () => setProductionUse(stranger, { productionId, use: null }),
+      () => setShortlistItem(stranger, { itemId, note: "mine" }),
+      () => removeFromShortlist(stranger, { itemId }),
     ])
-      await expect(attempt).rejects.toBeInstanceOf(NotFound);
+      await expect(attempt()).rejects.toBeInstanceOf(NotFound);
     expect((await listProductions(stranger, {})).length).toBe(0);
     expect(await listProductions(tobias, {})).toMatchObject([{ id: productionId, cues: 1 }]);
   });
