@@ -66,8 +66,8 @@ export async function lapseLeases(): Promise<string[]> {
   return held.map(({ name }) => name);
 }
 
-/** Waits until no job is left that may run; the test's own limit ends a wait in vain. */
-export async function queueIsEmpty(): Promise<void> {
+/** Waits until no job (of these names) is left that may run; the test's own limit ends a wait in vain. */
+export async function queueIsEmpty(names?: readonly string[]): Promise<void> {
   for (;;) {
     const open = await db()
       .select({ id: jobs.id })
@@ -76,6 +76,7 @@ export async function queueIsEmpty(): Promise<void> {
         and(
           inArray(jobs.state, ["ready", "leased"]),
           lte(jobs.runAt, new Date(systemNow().getTime() + 600_000)),
+          names ? inArray(jobs.name, [...names]) : undefined,
         ),
       )
       .limit(1);
