@@ -148,7 +148,7 @@ CREATE TABLE `family_terms` (
 	`kind` varchar(12) character set ascii collate ascii_bin NOT NULL,
 	`term` varchar(40) character set ascii collate ascii_bin NOT NULL,
 	`position` int NOT NULL,
-	CONSTRAINT `family_terms_once` UNIQUE(`family_id`,`kind`,`term`)
+	CONSTRAINT `family_terms_family_id_kind_term_pk` PRIMARY KEY(`family_id`,`kind`,`term`)
 );
 --> statement-breakpoint
 CREATE TABLE `holds` (
@@ -781,7 +781,7 @@ CREATE TABLE `report_limits` (
 	`subject_hash` varchar(64) character set ascii collate ascii_bin NOT NULL,
 	`day` varchar(10) character set ascii collate ascii_bin NOT NULL,
 	`count` int NOT NULL,
-	CONSTRAINT `report_limits_once` UNIQUE(`subject_hash`,`day`)
+	CONSTRAINT `report_limits_subject_hash_day_pk` PRIMARY KEY(`subject_hash`,`day`)
 );
 --> statement-breakpoint
 CREATE TABLE `reported_works` (

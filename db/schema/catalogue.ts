@@ -1,4 +1,14 @@
-import { boolean, double, index, int, mysqlTable, text, uniqueIndex, varchar } from "drizzle-orm/mysql-core";
+import {
+  boolean,
+  double,
+  index,
+  int,
+  mysqlTable,
+  primaryKey,
+  text,
+  uniqueIndex,
+  varchar,
+} from "drizzle-orm/mysql-core";
 import { ascii, at, bytes, id, jsonOf, sha256 } from "@/db/columns";
 
 export const libraries = mysqlTable("libraries", {
@@ -74,7 +84,7 @@ export const familyTerms = mysqlTable(
     position: int("position").notNull(),
   },
   (table) => [
-    uniqueIndex("family_terms_once").on(table.familyId, table.kind, table.term),
+    primaryKey({ columns: [table.familyId, table.kind, table.term] }),
     index("family_terms_term").on(table.kind, table.term),
   ],
 );

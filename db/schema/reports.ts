@@ -1,4 +1,4 @@
-import { boolean, double, index, int, mysqlTable, text, uniqueIndex, varchar } from "drizzle-orm/mysql-core";
+import { boolean, double, index, int, mysqlTable, primaryKey, text, varchar } from "drizzle-orm/mysql-core";
 import { ascii, at, bytes, id, jsonOf } from "@/db/columns";
 
 /** A report of a work, from anybody. */
@@ -76,5 +76,5 @@ export const reportLimits = mysqlTable(
     day: ascii(10)("day").notNull(),
     count: int("count").notNull(),
   },
-  (table) => [uniqueIndex("report_limits_once").on(table.subjectHash, table.day)],
+  (table) => [primaryKey({ columns: [table.subjectHash, table.day] })],
 );
