@@ -25,8 +25,18 @@ const identifier = (
       return z.NEVER;
     });
 
-const optional = <S extends z.ZodType>(schema: S) =>
-  z.union([z.literal("").transform(() => null), z.null(), schema]);
+/** Nothing, or what fits. Not a union: its refusal would say "Invalid input" in place of the schema's own sentence. */
+const optional = (schema: z.ZodType<string, string>) =>
+  z
+    .string()
+    .nullable()
+    .transform((text, context): string | null => {
+      if (text === null || text === "") return null;
+      const parsed = schema.safeParse(text);
+      if (parsed.success) return parsed.data;
+      for (const { message } of parsed.error.issues) context.addIssue({ code: "custom", message });
+      return z.NEVER;
+    });
 
 export const IsrcField = optional(identifier(checkIsrc));
 export const IswcField = optional(identifier(checkIswc));

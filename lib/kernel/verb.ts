@@ -102,7 +102,13 @@ export function command<const K extends ActorKind, I extends z.ZodType, S, R>(
       await writeAudit(tx, { operationId, verb: spec.name, actor, entry, result });
       return result;
     };
-    return inTransaction(body, options?.operationId === undefined ? {} : { again: "duplicate" });
+    if (options?.operationId === undefined) return inTransaction(body);
+    return inTransaction(body, { again: "duplicate" }).catch(async (error: unknown) => {
+      // The same operation may have been first while this one waited for a row, and changed what this one then found.
+      const done = await findOperation(db(), operationId).catch(() => null);
+      if (done?.verb === spec.name) return done.result as R;
+      throw error;
+    });
   });
 }
 

@@ -61,7 +61,10 @@ async function measure(
   };
 }
 
+/** As the database keeps it; a Broadcast Wave's time reference is a count that a number may not hold. */
 const plain = (value: unknown): Record<string, unknown> =>
-  JSON.parse(JSON.stringify(value)) as Record<string, unknown>;
+  JSON.parse(
+    JSON.stringify(value, (_name, one: unknown) => (typeof one === "bigint" ? String(one) : one)),
+  ) as Record<string, unknown>;
 
 serveThread({ measure });
