@@ -10,6 +10,7 @@ import { sleep } from "./random-instants";
 const root = fileURLToPath(new URL("../..", import.meta.url));
 
 export interface WorkerProcess {
+  pid: number;
   /** Resolves when its modules are loaded. */
   loaded: Promise<void>;
   begin(): Promise<void>;
@@ -42,6 +43,7 @@ export function spawnWorker(): WorkerProcess {
   const loaded = hears("loaded\n");
   loaded.catch(() => undefined);
   return {
+    pid: child.pid ?? 0,
     loaded,
     async begin() {
       await loaded;
