@@ -15,6 +15,7 @@ import { reportsHandlers } from "@/lib/reports/jobs";
 import { reviewHandlers } from "@/lib/review/jobs";
 import { closeScreeningEngine } from "@/lib/screening/engine/engine";
 import { screeningHandlers } from "@/lib/screening/jobs";
+import { removeLeftovers } from "@/lib/uploads";
 import { enqueueSlots } from "./slots";
 
 /** Every job by the room that handles it. */
@@ -33,6 +34,8 @@ export const handlers: Handlers = {
 const stop = new AbortController();
 for (const signal of ["SIGTERM", "SIGINT"] as const) process.on(signal, () => stop.abort());
 
+const leftovers = await removeLeftovers();
+if (leftovers > 0) log.info({ leftovers }, "what killed workers left on the disk is removed");
 log.info("the worker is ready");
 await runWorker({ handlers, signal: stop.signal, onTick: enqueueSlots });
 await Promise.allSettled([closeScreeningEngine(), closeMeasuring(), closeRendering(), closeDemonstration()]);

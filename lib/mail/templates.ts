@@ -38,5 +38,7 @@ export async function renderMail(name: MailName, props: unknown, frame: Frame): 
     plainText: true,
     htmlToTextOptions: { wordwrap: 78, selectors: [...PLAIN, WORKS] },
   });
-  return { subject: prefix + template.subject(parsed), html, text };
+  // A title may hold a line break; a header may not.
+  const subject = template.subject(parsed).replace(/\s+/g, " ");
+  return { subject: prefix + subject, html, text };
 }

@@ -1,6 +1,7 @@
 export { UploadError, type UploadErrorReason } from "./errors";
 export { withLocalCopy } from "./local-copy";
 export { streamStored } from "./range-response";
+export { removeLeftovers } from "./remove-leftovers";
 export { UPLOAD_WINDOW_H, type UploadSlug, uploadLimits, uploadSlugs } from "./states";
 export {
   type ByteRange,

@@ -1,4 +1,6 @@
 import "@/tests/support/database";
+import { readdirSync, utimesSync, writeFileSync } from "node:fs";
+import { join } from "node:path";
 import { eq, isNull } from "drizzle-orm";
 import { afterAll, beforeAll, expect, test } from "vitest";
 import { db } from "@/db/client";
@@ -169,4 +171,18 @@ test("workers killed after each job's work and before its last word: every job d
   expect(affectedRows).toBeGreaterThan(handedIn.length * 3);
   await queueIsEmpty();
   await expectWhole();
+});
+
+test("what killed workers left on the disk is gone when the next one starts, and only what is old", {
+  timeout: 120_000,
+}, async () => {
+  const folder = join(standIns.folder, "media", "copies");
+  const left = readdirSync(folder);
+  const [old, fresh] = [join(folder, "left-by-the-dead.wav"), join(folder, "in-use.wav")];
+  for (const path of [old, fresh]) writeFileSync(path, "bytes");
+  const threeHoursAgo = new Date(Date.now() - 3 * 3_600_000);
+  for (const path of [old, ...left.map((name) => join(folder, name))])
+    utimesSync(path, threeHoursAgo, threeHoursAgo);
+  await waiting.begin();
+  expect(readdirSync(folder)).toEqual(["in-use.wav"]);
 });
